@@ -278,6 +278,11 @@ JOINT = Group(
         _length("width", "Width drawn or built", symbol="w", section="Joint", above=True, hard_min=0.0, hard_max=500.0,
                 soft_min=3.0, soft_max=75.0, soft_reason="Sealed joints are seldom outside this range.",
                 help="For a lap: the thickness of the bead between the faces. Leave empty to be told."),
+        Field("width_is", "This width is", "choice", default="drawn", section="Joint",
+              choices=(
+                  Choice("drawn", "Drawn: tolerances still come off it"),
+                  Choice("built", "Built and measured: no tolerance comes off"),
+              )),
         _length("fabrication_tolerance", "Fabrication tolerance", section="Tolerances of this joint", advanced=True,
                 example={METRIC: "3 mm", INCH: "1/8 in"}, **_TOLERANCE, help="Empty: as set for the site."),
         _length("erection_tolerance", "Erection tolerance", section="Tolerances of this joint", advanced=True,
@@ -419,6 +424,12 @@ class Reads:
     system: str
     issues: list[Issue] = field(factory=list)
     readings: dict[str, dict[str, object]] = field(factory=dict)
+    places: set[str] = field(factory=set)
+
+    def add(self, issue: Issue) -> None:
+        """Keep one finding."""
+        self.issues.append(issue)
+        self.places.add(issue.path)
 
 
 def read_group(spec: Group, raw: object, path: str, reads: Reads, tables: Tables, *, label: str = "") -> dict[str, Any]:
@@ -448,7 +459,7 @@ def read_group(spec: Group, raw: object, path: str, reads: Reads, tables: Tables
     if raw is None:
         raw = {}
     if not isinstance(raw, Mapping):
-        reads.issues.append(Issue(path, "not-an-object", "error", f"{label or spec.label} is damaged: a set of fields was expected here."))
+        reads.add(Issue(path, "not-an-object", "error", f"{label or spec.label} is damaged: a set of fields was expected here."))
         return values
     for item in spec.fields:
         values[item.key] = _read_field(item, raw.get(item.key), f"{path}/{item.key}", reads, tables, label)
@@ -469,7 +480,7 @@ def _read_field(item: Field, raw: object, path: str, reads: Reads, tables: Table
 
 
 def _refuse(reads: Reads, path: str, code: str, message: str, value: object) -> None:
-    reads.issues.append(Issue(path, code, "error", message, value=value if isinstance(value, (str, int, float)) else None))
+    reads.add(Issue(path, code, "error", message, value=value if isinstance(value, (str, int, float)) else None))
 
 
 def _read_text(item: Field, raw: object, path: str, reads: Reads, tables: Tables, label: str) -> str | None:
@@ -525,7 +536,7 @@ def _read_quantity(item: Field, raw: object, path: str, reads: Reads, tables: Ta
         return None
     unit = reading.unit
     if reading.is_bare:
-        reads.issues.append(Issue(path, "unit-missing", "note", f"{_name(item, label)} has no unit; read as {quantity.sign_of(units[0])}.", value=raw))
+        reads.add(Issue(path, "unit-missing", "note", f"{_name(item, label)} has no unit; read as {quantity.sign_of(units[0])}.", value=raw))
     reads.readings[path] = _reads_as(item, reading, reads.system)
     good = _within(item, reading.value, path, reads, label, lambda v: quantity.show(v, item.kind, unit), unit)
     return reading.value if good else None
@@ -563,15 +574,15 @@ def _within(item: Field, value: float, path: str, reads: Reads, label: str, show
     low, high = item.hard_min, item.hard_max
     if low is not None and (value <= low if item.above else value < low):
         must = f"more than {show(low)}" if item.above else f"{show(low)} or more"
-        reads.issues.append(Issue(path, "too-small", "error", f"{name} must be {must}; this reads {show(value)}.", value, low, unit))
+        reads.add(Issue(path, "too-small", "error", f"{name} must be {must}; this reads {show(value)}.", value, low, unit))
         return False
     if high is not None and value > high:
-        reads.issues.append(Issue(path, "too-large", "error", f"{name} must be {show(high)} or less; this reads {show(value)}.", value, high, unit))
+        reads.add(Issue(path, "too-large", "error", f"{name} must be {show(high)} or less; this reads {show(value)}.", value, high, unit))
         return False
     for limit, wrong, word in ((item.soft_min, lambda: value < item.soft_min, "below"), (item.soft_max, lambda: value > item.soft_max, "above")):
         if limit is not None and wrong():
             message = f"{name} reads {show(value)}, {word} {show(limit)}. {item.soft_reason} Sure?"
-            reads.issues.append(Issue(path, "unusual", "warning", message, value, limit, unit))
+            reads.add(Issue(path, "unusual", "warning", message, value, limit, unit))
     return True
 
 

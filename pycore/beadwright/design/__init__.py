@@ -1,0 +1,1 @@
+"""Decisions for a new joint."""

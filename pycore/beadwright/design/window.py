@@ -1,0 +1,113 @@
+"""The sealing window: element temperatures at which sealing keeps both extremes within class."""
+
+from __future__ import annotations
+
+import math
+
+from attrs import frozen
+
+from ..physics import strain
+from ..working import DEFINITION, Step, Value
+from .movement import Movement
+from .width import TOTAL_SWING, Capability, holds
+
+
+@frozen
+class Window:
+    """Range of one element temperature, same on both sides; None bounds mean that there is none."""
+
+    from_c: float | None
+    to_c: float | None
+    low_limited_by: str
+    high_limited_by: str
+    advice: str
+
+    @property
+    def is_empty(self) -> bool:
+        """Whether no sealing temperature keeps the class."""
+        return self.from_c is None
+
+
+def _slack(width_mm: float, movement: Movement, capability: Capability, gap_mm: float) -> tuple[float, float]:
+    """Greatest opening and greatest closing that the class allows at this width. [mm]"""
+    assert capability.extension_fraction is not None and capability.compression_fraction is not None
+    if movement.kind == "lap":
+        slide = strain.allowed_shear_mm(width_mm, movement.entered_opening_mm, capability.extension_fraction)
+        along = math.sqrt(max(0.0, slide * slide - movement.across_mm**2)) - movement.entered_shear_mm if slide >= movement.across_mm else -1.0
+        if movement.entered_closing_mm > min(capability.compression_fraction * width_mm, width_mm - gap_mm) + 1e-9:
+            along = -1.0
+        return along, along
+    opening = strain.allowed_opening_mm(width_mm, movement.shear_mm, capability.extension_fraction)
+    return opening, min(capability.compression_fraction * width_mm, width_mm - gap_mm)
+
+
+def find_window(width_mm: float, movement: Movement, capability: Capability, closed_gap_mm: float) -> Window:
+    """The range of element temperature in which a joint of this width may be sealed.
+
+    Parameters
+    ----------
+    width_mm : float
+        Width at sealing, least as built. [mm]
+    movement : Movement
+        The budget; its shear is held constant, on the safe side.
+    capability : Capability
+        Class under the convention of the project.
+    closed_gap_mm : float
+        Gap that must remain at the hottest. [mm]
+
+    Returns
+    -------
+    Window
+        Within the temperatures that the elements reach. Under the total-swing convention the
+        sealing temperature does not matter, so the window is everything or nothing.
+
+    Notes
+    -----
+    Definition: opening grows and closing falls in step with the sealing temperature, so each
+    end is where one of them uses up the class.
+    """
+    low_c, high_c = movement.cold_c, movement.hot_c
+    rate = movement.rate_mm_per_k
+    if capability.convention == TOTAL_SWING or rate == 0.0:
+        opening, closing, shear = movement.at(*(low_c for _ in movement.elements))
+        fits = holds(width_mm, opening, closing, shear, capability, closed_gap_mm)
+        if fits:
+            return Window(low_c, high_c, "element", "element", "")
+        return Window(None, None, "swing", "swing", "The swing is too large at any sealing temperature: a wider joint, a higher class or shorter elements.")
+    open_slack, close_slack = _slack(width_mm, movement, capability, closed_gap_mm)
+    to_c = (open_slack - movement.fixed_opening_mm + sum(item.rate_mm_per_k * item.cold_c for item in movement.elements)) / rate
+    from_c = (sum(item.rate_mm_per_k * item.hot_c for item in movement.elements) + movement.fixed_closing_mm - close_slack) / rate
+    if from_c > to_c + 1e-9 or from_c > high_c or to_c < low_c:
+        ways = "a wider joint, a higher class, or shorter elements"
+        if from_c > to_c + 1e-9:
+            advice = f"Opening and closing together are too much for the class at any sealing temperature: {ways}."
+        elif to_c < low_c:
+            advice = f"Opening is too much even when sealed at the coldest: {ways}."
+        else:
+            advice = f"Closing is too much even when sealed at the hottest: {ways}."
+        return Window(None, None, "closing", "opening", advice)
+    return Window(
+        max(from_c, low_c), min(to_c, high_c),
+        "closing" if from_c > low_c else "element", "opening" if to_c < high_c else "element", "",
+    )  # fmt: skip
+
+
+def window_steps(width_mm: float, movement: Movement, capability: Capability, closed_gap_mm: float, window: Window) -> list[Step]:
+    """Working of both ends of the window; none where the sealing temperature does not matter."""
+    rate = movement.rate_mm_per_k
+    if capability.convention == TOTAL_SWING or rate == 0.0 or window.is_empty:
+        return []
+    open_slack, close_slack = _slack(width_mm, movement, capability, closed_gap_mm)
+    per_k = Value(rate, "rate")
+    cold = sum(item.rate_mm_per_k * item.cold_c for item in movement.elements) / rate
+    hot = sum(item.rate_mm_per_k * item.hot_c for item in movement.elements) / rate
+    return [
+        Step("window-to", "Sealing window, upper end", "T_to", "T_cold + (o_max − o_other) / Σ(α L)", "{T} + ({m} − {f}) / {r}",
+             {"T": Value(cold, "temperature"), "m": Value(open_slack, "length"), "f": Value(movement.fixed_opening_mm, "length"), "r": per_k},
+             Value(window.to_c, "temperature"), "Definition: the opening then just uses up the class", DEFINITION,
+             remark="Held at the hottest that the elements get." if window.high_limited_by == "element" else ""),
+        Step("window-from", "Sealing window, lower end", "T_from", "T_hot − (c_max − c_other) / Σ(α L)", "{T} − ({m} − {f}) / {r}",
+             {"T": Value(hot, "temperature"), "m": Value(close_slack, "length"), "f": Value(movement.fixed_closing_mm, "length"), "r": per_k},
+             Value(window.from_c, "temperature"), "Definition: the closing then just uses up the class", DEFINITION,
+             remark="Held at the coldest that the elements get." if window.low_limited_by == "element" else ""),
+    ]  # fmt: skip

@@ -1,0 +1,275 @@
+"""The one door to the core: `forms`, `evaluate`, `export`, and the few calls around a job file.
+
+Everything is plain JSON data in and out. `evaluate` never raises for what a user typed; an
+exception that leaves this module is a fault of the program.
+"""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Iterable, Mapping
+from functools import cache
+from typing import Any
+
+from . import __version__, catalogue
+from .design.cautions import cautions_of_job, cautions_of_joint
+from .design.inputs import OWN_CLASS, Project, read_joints, read_project
+from .design.joint import Judgement, judge
+from .field.face import at_the_face
+from .fields import GROUPS, Choice, Field
+from .job import blank, blank_row, compare, merge, open_bytes, to_bytes
+from .quantity import INCH, METRIC
+from .sheet import joint_sheet, printed, schedule
+from .sheet.face_sheet import FACE_WORDS
+from .working import Issue
+
+__all__ = ["blank", "blank_row", "compare", "evaluate", "export", "forms", "frames", "merge", "open_file"]
+
+EXPORT_KINDS = ("job", "sheet", "text", "schedule")
+
+
+def _core() -> dict[str, Any]:
+    return {"version": __version__, "tables": list(catalogue.table_ids())}
+
+
+# ---- forms ------------------------------------------------------------------------------------
+
+
+def forms() -> dict[str, Any]:
+    """Every input, grouped, with labels, units, limits, choices and help.
+
+    Returns
+    -------
+    dict
+        `core`, `groups` (each with `key`, `label`, `path`, `fields`) and `words` for verdicts.
+    """
+    return {
+        "core": _core(),
+        "groups": [{"key": item.key, "label": item.label, "path": item.path, "fields": [_field(field) for field in item.fields]} for item in GROUPS],
+        "words": {
+            "verdicts": dict(joint_sheet.VERDICT_WORDS),
+            "face": dict(FACE_WORDS),
+            "kinds": dict(joint_sheet.KIND_WORDS),
+            "boundary": printed.BOUNDARY,
+        },
+    }
+
+
+def _field(item: Field) -> dict[str, Any]:
+    both = (METRIC, INCH)
+
+    def per_system(value: str | Mapping[str, str] | None) -> Any:
+        return dict(value) if isinstance(value, Mapping) else value
+
+    return {
+        "key": item.key,
+        "label": item.label,
+        "symbol": item.symbol,
+        "kind": item.kind,
+        "units": {system: list(item.units_for(system)) for system in both},
+        "default": per_system(item.default),
+        "required": item.required,
+        "choices": _choices(item),
+        "choices_from": {"field": "substrate", "key": "finishes"} if item.table == "finishes" else "sealants" if item.table == "sealants" else None,
+        "section": item.section,
+        "show_when": {key: list(values) for key, values in item.show_when.items()} if item.show_when else None,
+        "help": item.help,
+        "example": per_system(item.example),
+        "source": item.source,
+        "hard_min": item.hard_min,
+        "hard_max": item.hard_max,
+        "soft_min": item.soft_min,
+        "soft_max": item.soft_max,
+        "multiline": item.multiline,
+        "advanced": item.advanced,
+    }
+
+
+@cache
+def _table_choices() -> dict[str, list[dict[str, Any]]]:
+    def simple(rows: Mapping[str, Any], group: str | None = None) -> list[dict[str, Any]]:
+        return [{"value": key, "label": row.label} | ({"group": getattr(row, group)} if group else {}) for key, row in rows.items()]
+
+    classes = simple(catalogue.classes(), "standard")
+    classes.append({"value": OWN_CLASS, "label": "Own figures", "group": "Own"})
+    substrates = simple(catalogue.substrates(), "group")
+    for choice, row in zip(substrates, catalogue.substrates().values(), strict=True):
+        choice["finishes"] = [{"value": finish.id, "label": finish.label} for finish in row.finishes]
+    return {
+        "regions": simple(catalogue.regions()),
+        "depth_rules": simple(catalogue.depth_rules()),
+        "families": simple(catalogue.families()),
+        "classes": classes,
+        "uses": simple(catalogue.uses()),
+        "rod_types": simple(catalogue.rod_types()),
+        "substrates": substrates,
+    }
+
+
+def _choices(item: Field) -> list[dict[str, Any]] | None:
+    if item.choices:
+        return [_choice(choice) for choice in item.choices]
+    return _table_choices().get(item.table) if item.table else None
+
+
+def _choice(choice: Choice) -> dict[str, Any]:
+    shown = {"value": choice.value, "label": choice.label}
+    return shown | {"help": choice.help} if choice.help else shown
+
+
+# ---- evaluate ---------------------------------------------------------------------------------
+
+
+def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
+    """Judge a whole job.
+
+    Parameters
+    ----------
+    job : object
+        A decoded job file; anything else yields issues, not an exception.
+    only : iterable of str, optional
+        Ids of the joints to give in full; the others come in short form. None: all in full.
+
+    Returns
+    -------
+    dict
+        `core`, `issues`, `readings`, `joints`, `takeoff`, `cure`, `surveys`, `cautions`, `facts`.
+    """
+    project = read_project(job)
+    wanted = None if only is None else set(only)
+    answers: dict[str, Any] = {}
+    by_joint: dict[str, list[catalogue.Caution]] = {}
+    for joint in read_joints(job, project):
+        judged = judge(joint, project)
+        found = cautions_of_joint(judged, project)
+        by_joint[joint.id] = found
+        face = at_the_face(judged, project)
+        full = wanted is None or joint.id in wanted
+        answers[joint.id] = joint_sheet.joint_dict(judged, face, project.system, [item.id for item in found], full=full)
+    return {
+        "core": _core(),
+        "issues": [issue.as_dict() for issue in project.reads.issues],
+        "readings": project.reads.readings,
+        "joints": answers,
+        "takeoff": {},
+        "cure": {},
+        "surveys": {},
+        "cautions": _cautions(project, by_joint),
+        "facts": _facts(project),
+    }
+
+
+def _cautions(project: Project, by_joint: Mapping[str, list[catalogue.Caution]]) -> list[dict[str, Any]]:
+    joints_of: dict[str, list[str]] = {}
+    rows: dict[str, catalogue.Caution] = {item.id: item for item in cautions_of_job(project)}
+    for joint_id, found in by_joint.items():
+        for item in found:
+            rows.setdefault(item.id, item)
+            joints_of.setdefault(item.id, []).append(joint_id)
+    order = {"stop": 0, "warning": 1, "note": 2}
+    shown = sorted(rows.values(), key=lambda item: order.get(item.severity, 3))
+    return [{"id": item.id, "severity": item.severity, "title": item.title, "text": item.text, "source": f"{item.source} ({item.status})", "joints": joints_of.get(item.id, [])} for item in shown]
+
+
+def _facts(project: Project) -> list[dict[str, str]]:
+    site = project.site
+    rule = catalogue.depth_rules().get(site["depth_rule"] or "")
+    region = catalogue.regions().get(project.region)
+    facts = [
+        {"label": "Convention of the class", "value": joint_sheet.CONVENTION_WORDS[site["convention"] or "each-way"]},
+        {"label": "Depth rule set", "value": rule.label if rule else "none"},
+        {"label": "Tolerances", "value": "root of the sum of squares" if site["tolerance_method"] == "root-sum-square" else "worst case"},
+    ]
+    if region is not None:
+        facts.append({"label": "Region", "value": region.label})
+    return facts
+
+
+def _judged(job: object, joint_id: str) -> tuple[Project, Judgement | None]:
+    project = read_project(job)
+    for joint in read_joints(job, project):
+        if joint.id == joint_id:
+            return project, judge(joint, project)
+    return project, None
+
+
+def frames(job: object, joint_id: str) -> dict[str, Any]:
+    """The section of one joint from its coldest to its hottest, for the temperature scrubber.
+
+    Returns
+    -------
+    dict
+        `frames` (each `fraction`, `title`, `lines`, `drawing`), `start` (index of the sealing temperature), `caption`.
+    """
+    project, judged = _judged(job, joint_id)
+    if judged is None:
+        return {"frames": [], "start": 0, "caption": "This joint is not in the job."}
+    return joint_sheet.frames(judged, project.system)
+
+
+# ---- files ------------------------------------------------------------------------------------
+
+
+def open_file(data: bytes) -> dict[str, Any]:
+    """Read the bytes of a job file; see `job.open_bytes`. The answer is JSON-able."""
+    opened = open_bytes(bytes(data))
+    return {
+        "job": opened.job,
+        "issues": [issue.as_dict() for issue in opened.issues],
+        "read_only": opened.read_only,
+        "from_version": opened.from_version,
+    }
+
+
+def export(job: dict[str, Any], kind: str) -> tuple[str, str, bytes]:
+    """Write a job out.
+
+    Parameters
+    ----------
+    job : dict
+        A decoded job file.
+    kind : str
+        `job` (JSON), `sheet` (printable HTML), `text`, or `schedule` (CSV).
+
+    Returns
+    -------
+    tuple of str, str, bytes
+        File name, media type, content.
+
+    Raises
+    ------
+    ValueError
+        For an unknown kind.
+    """
+    stem = _stem(job)
+    if kind == "job":
+        return f"{stem}.beadwright.json", "application/json", to_bytes(job)
+    if kind not in EXPORT_KINDS:
+        raise ValueError(f"kind must be one of {', '.join(EXPORT_KINDS)}; got {kind!r}")
+    answer = evaluate(job)
+    if kind == "sheet":
+        return f"{stem}.html", "text/html", printed.sheet_html(job, answer)
+    if kind == "text":
+        return f"{stem}.txt", "text/plain", printed.sheet_text(job, answer).encode("utf-8")
+    return f"{stem}-schedule.csv", "text/csv", schedule.schedule_csv(answer["joints"].values())
+
+
+def _stem(job: Mapping[str, Any]) -> str:
+    """A file name of plain letters from reference or title."""
+    for key in ("reference", "title"):
+        value = job.get(key) if isinstance(job, Mapping) else None
+        if isinstance(value, str):
+            words = "".join(ch if ch.isascii() and ch.isalnum() else " " for ch in value).split()
+            if words:
+                return "-".join(words).lower()[:60]
+    return "beadwright-job"
+
+
+def to_json(value: object) -> str:
+    """JSON text of an answer; refuses NaN and infinity, which are faults."""
+    return json.dumps(value, ensure_ascii=False, allow_nan=False)
+
+
+def refused(issues: Iterable[Issue]) -> dict[str, Any]:
+    """The answer for a file that could not be opened."""
+    return {"core": _core(), "issues": [issue.as_dict() for issue in issues], "readings": {}, "joints": {}, "takeoff": {}, "cure": {}, "surveys": {}, "cautions": [], "facts": []}

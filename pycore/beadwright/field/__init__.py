@@ -1,0 +1,1 @@
+"""Decisions at an existing joint."""

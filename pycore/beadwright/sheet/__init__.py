@@ -1,0 +1,1 @@
+"""What people read: formatted answers, working, drawings and printed forms."""

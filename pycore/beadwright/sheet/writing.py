@@ -1,0 +1,106 @@
+"""Values to text in the reader's units, and working steps to lines that can be checked by hand."""
+
+from __future__ import annotations
+
+import math
+import re
+from typing import Any
+
+from .. import quantity
+from ..quantity import INCH, METRIC, plain
+from ..working import Step, Value
+
+_PLACE = re.compile(r"\{(\w+)\}")
+
+
+def value_text(value: Value | None, system: str) -> str:
+    """One value in the reader's units, at the precision of working (finer than that of answers)."""
+    if value is None or value.number is None:
+        return "–"
+    number, kind = value.number, value.kind
+    if kind == "number":
+        return plain(number, 4)
+    if kind == "area":
+        return f"{plain(number, 1)} mm²" if system == METRIC else f"{plain(number / 645.16, 4)} in²"
+    if kind == "rate":
+        return f"{plain(number, 4)} mm/K" if system == METRIC else f"{plain(number / 25.4 / 1.8, 6)} in/°F"
+    if kind == "length":
+        return f"{plain(number, 3)} mm" if system == METRIC else f"{plain(number / 25.4, 4)} in"
+    if kind == "percent":
+        small = abs(number) < 0.01
+        return f"{plain(number * 100, 4 if small else 2)} %"
+    if value.unit:
+        return quantity.show(number, kind, value.unit, 2)
+    unit = quantity.default_unit(kind, system)
+    return quantity.show(number, kind, unit, {"expansion": 3, "temperature": 2, "temperature_difference": 2}.get(kind))
+
+
+def step_lines(step: Step, system: str) -> dict[str, Any]:
+    """A step for the answer: title, symbol, formula, the numbers put in, result, source."""
+    texts = {name: value_text(value, system) for name, value in step.inputs.items()}
+    numbers = _PLACE.sub(lambda match: texts.get(match[1], match[0]), step.template)
+    lines: dict[str, Any] = {
+        "key": step.key,
+        "title": step.title,
+        "symbol": step.symbol,
+        "formula": step.formula,
+        "numbers": numbers,
+        "result": value_text(step.result, system),
+        "value": step.result.number if step.result else None,
+        "source": step.source,
+        "status": step.status,
+    }
+    if step.remark:
+        lines["remark"] = step.remark
+    return lines
+
+
+def length(value_mm: float | None, system: str) -> str:
+    """A joint-sized length as an answer."""
+    if value_mm is None:
+        return "–"
+    return quantity.show_length(value_mm, system)
+
+
+def up(value_mm: float, system: str) -> str:
+    """An unrounded length that must not look smaller than it is: one decimal, or 1/1000 in, rounded up."""
+    if system == METRIC:
+        return f"{plain(_ceil(value_mm, 10), 1)} mm"
+    return f"{plain(_ceil(value_mm / 25.4, 1000), 3)} in"
+
+
+def _ceil(value: float, per_unit: int) -> float:
+    return math.ceil(value * per_unit - 1e-6) / per_unit
+
+
+def span(value_mm: float, system: str) -> str:
+    """An element-sized length as an answer."""
+    return quantity.show_span(value_mm, system)
+
+
+def temperature(value_c: float, system: str) -> str:
+    """A temperature as an answer, to a whole degree where it is one."""
+    return quantity.show(value_c, "temperature", "degF" if system == INCH else "degC", 1)
+
+
+def difference(value_k: float, system: str) -> str:
+    """A temperature difference as an answer."""
+    return quantity.show(value_k, "temperature_difference", "degF" if system == INCH else "K", 1)
+
+
+def percent(fraction: float, *, signed: bool = False) -> str:
+    """A fraction as a percentage with one decimal."""
+    text = f"{plain(fraction * 100, 1)} %"
+    return f"+{text}" if signed and fraction > 0 else text
+
+
+def area(value_mm2: float, system: str) -> str:
+    """A section area as an answer."""
+    return f"{plain(value_mm2, 0)} mm²" if system == METRIC else f"{plain(value_mm2 / 645.16, 3)} in²"
+
+
+def volume_per_length(area_mm2: float, system: str) -> str:
+    """Volume per run length: ml per metre (numerically the area in mm²), or US fluid ounces per foot."""
+    if system == METRIC:
+        return f"{plain(area_mm2, 0)} ml per metre"
+    return f"{plain(area_mm2 / 645.16 * 12 / 1.8046875, 2)} US fl oz per foot"
