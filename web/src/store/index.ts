@@ -1,0 +1,612 @@
+// The door of the store. See types.ts for what goes through it.
+
+import { writeBackup, readBackup } from "./backup";
+import { Database, isQuotaFault } from "./db";
+import { findFault, jsonCopy } from "./envelope";
+import { askPersistence, gatherFacts } from "./facts";
+import { DATABASE_VERSION, migratePayload, MIGRATIONS, RECORD_SCHEMA } from "./migrations";
+import * as photos from "./photos";
+import { isSoundPointer, mendPointers, readJob, setAside, type Rules } from "./reading";
+import { Session, toStoreError, type SessionContext, type Stamp } from "./session";
+import { TEXT } from "./texts";
+import {
+  StoreError,
+  type Clash,
+  type ClashChoice,
+  type Envelope,
+  type HistoryState,
+  type Job,
+  type JobSummary,
+  type OpenResult,
+  type PhotoOptions,
+  type PhotoRef,
+  type Pointer,
+  type QuarantineInfo,
+  type RestoreResult,
+  type RevisionInfo,
+  type SaveState,
+  type StoreFacts,
+  type StoreOptions,
+} from "./types";
+import { Channel, WriterLocks, type Message } from "./writer";
+
+export type * from "./types";
+export { StoreError } from "./types";
+export { newId } from "./envelope";
+export { ageText, bytesText, clockText } from "./texts";
+export { RECORD_SCHEMA } from "./migrations";
+
+const DEFAULT_NAME = "beadwright";
+
+export interface StoreEvents {
+  /** The state of one job's saving has changed. */
+  "save-state": { id: string; state: SaveState };
+  /** The list of jobs, or a job in it, has changed; `isOther` when another window did it. */
+  jobs: { id: string | null; rev: number | null; isOther: boolean };
+  /** This window has begun or ceased to be the writer of a job. */
+  writer: { id: string; isWriter: boolean; text: string };
+  facts: Record<string, never>;
+  /** Something that the user should be told once. */
+  notice: { id: string | null; text: string };
+}
+
+export class Store extends EventTarget {
+  readonly #options: StoreOptions;
+  readonly #rules: Rules;
+  readonly #db: Database;
+  readonly #channel: Channel;
+  readonly #locks: WriterLocks;
+  readonly #sessions = new Map<string, Session>();
+  #core: string;
+  #tables: string[];
+  #stopped: string | null = null;
+
+  private constructor(options: StoreOptions) {
+    super();
+    this.#options = options;
+    this.#core = options.core ?? "";
+    this.#tables = options.tables ?? [];
+    this.#rules = {
+      schema: options.schema ?? RECORD_SCHEMA,
+      migrations: options.migrations ?? MIGRATIONS,
+      validate: options.validate ?? null,
+    };
+    const name = options.name ?? DEFAULT_NAME;
+    this.#db = new Database(name, options.databaseVersion ?? DATABASE_VERSION, {
+      onVersionChange: () => this.#stop(TEXT.newerApp),
+      onBlocked: () => this.#emit("notice", { id: null, text: TEXT.blocked }),
+    });
+    this.#channel = new Channel(name);
+    this.#channel.listen((message) => this.#hear(message));
+    this.#locks = new WriterLocks(`${name}:job:`, this.#channel);
+    this.#locks.onAsked = async (id) => this.#sessions.get(id)?.flush();
+    this.#locks.onLost = (id) => this.#lose(id, TEXT.takenOver);
+    if (typeof document !== "undefined") {
+      document.addEventListener("visibilitychange", this.#onVisibility);
+      addEventListener("pagehide", this.#hurry);
+      document.addEventListener("freeze", this.#hurry);
+    }
+  }
+
+  /** Never rejects for want of storage: jobs can then be worked on and exported, and every save says that it failed. */
+  static async open(options: StoreOptions): Promise<Store> {
+    const store = new Store(options);
+    try {
+      await store.#db.open();
+      await store.#announceSchema();
+      const mended = await mendPointers(store.#db);
+      if (mended.length > 0) store.#emit("jobs", { id: null, rev: null, isOther: false });
+    } catch (error) {
+      if (toStoreError(error).code === "newer-app") store.#stopped = TEXT.newerApp;
+    }
+    return store;
+  }
+
+  /** Versions that go into each record; the core's are known only once it runs. */
+  describe(core: string, tables: string[]): void {
+    this.#core = core;
+    this.#tables = [...tables];
+  }
+
+  // ---- jobs ---------------------------------------------------------------------------------------------------
+
+  async list(): Promise<JobSummary[]> {
+    return (await this.#pointers()).filter((pointer) => pointer.removed_at === null).map((p) => this.#summary(p));
+  }
+
+  async bin(): Promise<JobSummary[]> {
+    return (await this.#pointers()).filter((pointer) => pointer.removed_at !== null).map((p) => this.#summary(p));
+  }
+
+  async open(id: string): Promise<OpenResult> {
+    const open = this.#sessions.get(id);
+    if (open?.isLoaded && open.isWriter && open.hasUnsaved) {
+      // Opened again while something is unsaved: what is on screen is the truth.
+      return this.#result(open, null, null);
+    }
+    const isWriter = this.#stopped === null && (await this.#locks.tryTake(id));
+    try {
+      return await this.#load(id, isWriter);
+    } catch (error) {
+      if (isWriter && !this.#sessions.has(id)) this.#locks.release(id);
+      throw toStoreError(error);
+    }
+  }
+
+  /** Give up the job: what is left is written, then another window may take it. */
+  async close(id: string): Promise<void> {
+    const session = this.#sessions.get(id);
+    if (session === undefined) return;
+    await session.flush();
+    session.stop();
+    this.#sessions.delete(id);
+    this.#locks.release(id);
+  }
+
+  async create(job: Job, reason = "New job"): Promise<void> {
+    const existing = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").get(job.id)).catch(() => undefined);
+    if (existing !== undefined || this.#sessions.has(job.id)) throw new StoreError("exists", "There is a job with this id already.");
+    await this.#locks.tryTake(job.id);
+    const session = new Session(job.id, this.#context);
+    session.isWriter = true;
+    this.#sessions.set(job.id, session);
+    session.begin(null, jsonCopy(job), null, undefined);
+    if (this.#stopped !== null) session.readOnly = { code: "newer-app", reason: this.#stopped };
+    await session.commit(job, reason);
+  }
+
+  /** While typing: kept as a draft a moment later. */
+  change(id: string, job: Job): void {
+    this.#session(id).change(job);
+  }
+
+  /** Resolves when the revision is on the disk. A rejected save stays queued, on screen, and is tried again. */
+  commit(id: string, job: Job, reason = "Edit"): Promise<void> {
+    const session = this.#sessions.get(id);
+    if (session === undefined) return Promise.reject(new StoreError("not-open", "The job is not open yet."));
+    return session.commit(job, reason);
+  }
+
+  /** All that was typed or committed is on the disk, or this rejects. Call before an update, an export, a finish. */
+  async flush(): Promise<void> {
+    const results = await Promise.allSettled([...this.#sessions.values()].map((session) => session.flush()));
+    for (const result of results) if (result.status === "rejected") throw toStoreError(result.reason);
+  }
+
+  saveState(id: string): SaveState {
+    return this.#sessions.get(id)?.state ?? { kind: "idle", savedAt: null, text: TEXT.idle };
+  }
+
+  get hasUnsaved(): boolean {
+    return [...this.#sessions.values()].some((session) => session.hasUnsaved);
+  }
+
+  isWriter(id: string): boolean {
+    return this.#sessions.get(id)?.isWriter ?? false;
+  }
+
+  /** Become the writer; the other window writes its last edits and reads from then on. */
+  async takeOver(id: string): Promise<OpenResult> {
+    if (this.#stopped !== null) throw new StoreError("newer-app", this.#stopped);
+    await this.#locks.takeOver(id);
+    this.#sessions.delete(id);
+    const result = await this.#load(id, true);
+    // Should the write fail, the other window is still refused as soon as this one has saved something.
+    await this.#session(id).claim().catch(() => undefined);
+    this.#emit("writer", { id, isWriter: true, text: "" });
+    return result;
+  }
+
+  // ---- drafts -------------------------------------------------------------------------------------------------
+
+  async restoreDraft(id: string): Promise<Job> {
+    const session = this.#session(id);
+    const draft = session.offered;
+    if (draft === null) throw new StoreError("not-found", "There is no draft of this job.");
+    const job = draft.envelope.payload;
+    await session.commit(job, "Draft restored");
+    return jsonCopy(job);
+  }
+
+  async discardDraft(id: string, keepCopy = true): Promise<void> {
+    const session = this.#session(id);
+    const draft = session.offered;
+    if (draft === null) return;
+    await this.#db.write(["drafts"], "strict", async (tx) => {
+      const drafts = tx.objectStore("drafts");
+      if (keepCopy) await drafts.put({ ...draft, slot: `kept ${draft.envelope.saved_at}` });
+      await drafts.delete([id, "now"]);
+    });
+    session.offered = null;
+  }
+
+  async keptDrafts(id: string): Promise<{ slot: string; at: string; job: Job }[]> {
+    const range = IDBKeyRange.bound([id, "kept "], [id, "kept \uffff"]);
+    const records = await this.#db.read(["drafts"], (tx) => tx.objectStore("drafts").getAll(range));
+    return records
+      .filter((record) => findFault(record.envelope) === null && record.envelope.schema <= this.#rules.schema)
+      .map(({ slot, envelope }) => ({ slot, at: envelope.saved_at, job: this.#migrated(envelope) }));
+  }
+
+  async deleteKeptDraft(id: string, slot: string): Promise<void> {
+    if (!slot.startsWith("kept ")) return;
+    await this.#db.write(["drafts"], "strict", (tx) => tx.objectStore("drafts").delete([id, slot]));
+  }
+
+  // ---- undo ---------------------------------------------------------------------------------------------------
+
+  history(id: string): HistoryState {
+    return this.#session(id).historyState;
+  }
+
+  /** The state to show, or null; `saved` settles like a commit. */
+  async undo(id: string): Promise<{ job: Job; label: string; saved: Promise<void> } | null> {
+    return this.#session(id).move(-1);
+  }
+
+  async redo(id: string): Promise<{ job: Job; label: string; saved: Promise<void> } | null> {
+    return this.#session(id).move(1);
+  }
+
+  // ---- revisions ----------------------------------------------------------------------------------------------
+
+  async revisions(id: string): Promise<RevisionInfo[]> {
+    const pointer = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").get(id));
+    return (pointer?.revisions ?? [])
+      .map(({ saved_at, ...mark }) => ({ ...mark, savedAt: saved_at }))
+      .reverse();
+  }
+
+  async openRevision(id: string, rev: number): Promise<Job> {
+    const record = await this.#db.read(["revisions"], (tx) => tx.objectStore("revisions").get([id, rev]));
+    if (record === undefined) throw new StoreError("not-found", "That copy is no longer kept.");
+    const fault = findFault(record);
+    if (fault !== null) throw new StoreError("damaged", `That copy cannot be used: ${fault}.`);
+    if (record.schema > this.#rules.schema) throw new StoreError("read-only", TEXT.newerRecord);
+    return this.#migrated(record);
+  }
+
+  async pin(id: string, rev: number, isPinned = true): Promise<void> {
+    await this.#changePointer(id, (pointer) => ({
+      ...pointer,
+      revisions: pointer.revisions.map((mark) => (mark.rev === rev ? { ...mark, pinned: isPinned } : mark)),
+    }));
+  }
+
+  // ---- the bin ------------------------------------------------------------------------------------------------
+
+  async remove(id: string): Promise<void> {
+    await this.close(id).catch(() => undefined);
+    if (!(await this.#locks.tryTake(id))) throw new StoreError("read-only", TEXT.otherWindow);
+    try {
+      await this.#changePointer(id, (pointer) => ({ ...pointer, removed_at: new Date().toISOString() }));
+    } finally {
+      this.#locks.release(id);
+    }
+  }
+
+  async putBack(id: string): Promise<void> {
+    await this.#changePointer(id, (pointer) => ({ ...pointer, removed_at: null }));
+  }
+
+  /** Deletes for good what is in the bin, photos and copies too. */
+  async emptyBin(ids?: string[]): Promise<number> {
+    const removed = (await this.#pointers()).filter((p) => p.removed_at !== null && (ids?.includes(p.id) ?? true));
+    for (const { id } of removed) {
+      const attached = await photos.list(this.#db, id);
+      await photos.remove(this.#db, attached.map((photo) => photo.id));
+      await this.#db.write(["jobs", "revisions", "drafts", "meta"], "strict", async (tx) => {
+        await Promise.all([
+          tx.objectStore("revisions").delete(IDBKeyRange.bound([id, -Infinity], [id, Infinity])),
+          tx.objectStore("drafts").delete(IDBKeyRange.bound([id, ""], [id, "\uffff"])),
+          tx.objectStore("meta").delete(`history/${id}`),
+          tx.objectStore("meta").delete(`writer/${id}`),
+          tx.objectStore("jobs").delete(id),
+        ]);
+      });
+      this.#emit("jobs", { id, rev: null, isOther: false });
+    }
+    if (removed.length > 0) this.#emit("facts", {});
+    return removed.length;
+  }
+
+  // ---- what could not be read, and raw export -----------------------------------------------------------------
+
+  async quarantine(): Promise<QuarantineInfo[]> {
+    const records = await this.#db.read(["quarantine"], (tx) => tx.objectStore("quarantine").getAll());
+    return records.map(({ key, id, reason, at, record }) => ({ key, id, reason, at, raw: JSON.stringify(record) }));
+  }
+
+  async deleteQuarantined(key: string): Promise<void> {
+    await this.#db.write(["quarantine"], "strict", (tx) => tx.objectStore("quarantine").delete(key));
+    this.#emit("facts", {});
+  }
+
+  /** What is on screen when it is unsaved, else the newest record as it is stored, whatever wrote it. */
+  async rawExport(id: string): Promise<Blob> {
+    const session = this.#sessions.get(id);
+    if (session?.latest && (session.hasUnsaved || session.state.kind === "failed")) {
+      return new Blob([JSON.stringify(session.latest, null, 1)], { type: "application/json" });
+    }
+    const record = await this.#db.read(["jobs", "revisions"], async (tx) => {
+      const pointer = await tx.objectStore("jobs").get(id);
+      return pointer === undefined ? undefined : tx.objectStore("revisions").get([id, pointer.rev]);
+    });
+    if (record === undefined) throw new StoreError("not-found", "There is no such job on this tablet.");
+    return new Blob([JSON.stringify(record, null, 1)], { type: "application/json" });
+  }
+
+  // ---- backup -------------------------------------------------------------------------------------------------
+
+  /** All jobs and photos, or those of the jobs named, in one file. Tell `noteBackup` once it is out of the browser. */
+  async backup(only?: string[]): Promise<Blob> {
+    await this.flush().catch(() => undefined);
+    const unsaved = new Map<string, Job>();
+    for (const [id, session] of this.#sessions) {
+      if (session.latest !== null && (session.hasUnsaved || session.state.kind === "failed")) unsaved.set(id, session.latest);
+    }
+    return writeBackup(this.#db, this.#stamp(), unsaved, only);
+  }
+
+  async restore(file: Blob, choose: (clash: Clash) => ClashChoice | Promise<ClashChoice>): Promise<RestoreResult> {
+    if (this.#stopped !== null) throw new StoreError("newer-app", this.#stopped);
+    const result = await readBackup(file, choose, {
+      db: this.#db,
+      rules: this.#rules,
+      find: (id) => this.#findForRestore(id),
+      save: (job, reason) => this.#saveRestored(job, reason),
+      addRevision: (record) => this.#addRevision(record),
+    });
+    this.#emit("facts", {});
+    return result;
+  }
+
+  /** A job, or with no id everything, is in a file outside the browser now. */
+  async noteBackup(id?: string): Promise<void> {
+    const at = new Date().toISOString();
+    await this.#db.write(["jobs", "meta"], "strict", async (tx) => {
+      const jobs = tx.objectStore("jobs");
+      for (const pointer of await jobs.getAll()) {
+        if (!isSoundPointer(pointer) || (id !== undefined && pointer.id !== id)) continue;
+        // A copy that went out alone is kept, so that it can be compared with when it comes back.
+        const revisions =
+          id === undefined ? pointer.revisions : pointer.revisions.map((m) => (m.rev === pointer.rev ? { ...m, exported: true } : m));
+        await jobs.put({ ...pointer, revisions, backup: { rev: pointer.rev, at } });
+      }
+      await tx.objectStore("meta").put({ key: "last-backup", value: at });
+    });
+    this.#emit("facts", {});
+  }
+
+  // ---- photos -------------------------------------------------------------------------------------------------
+
+  async attachPhoto(jobId: string, file: Blob, options: PhotoOptions = {}): Promise<PhotoRef> {
+    if (this.#stopped !== null) throw new StoreError("newer-app", this.#stopped);
+    try {
+      const ref = await photos.attach(this.#db, this.#stamp(), jobId, file, options);
+      this.#emit("facts", {});
+      return ref;
+    } catch (error) {
+      if (isQuotaFault(error)) throw new StoreError("quota", "The photo is not saved: this tablet has no space left.", error);
+      throw toStoreError(error);
+    }
+  }
+
+  async photos(jobId: string): Promise<PhotoRef[]> {
+    return photos.list(this.#db, jobId);
+  }
+
+  async photo(ref: { id: string } | string, part: "shown" | "original" = "shown"): Promise<Blob> {
+    return (await photos.read(this.#db, typeof ref === "string" ? ref : ref.id, part)).blob;
+  }
+
+  async removePhoto(ref: { id: string } | string): Promise<void> {
+    await photos.remove(this.#db, [typeof ref === "string" ? ref : ref.id]);
+    this.#emit("facts", {});
+  }
+
+  // ---- facts --------------------------------------------------------------------------------------------------
+
+  async facts(): Promise<StoreFacts> {
+    return gatherFacts(this.#db);
+  }
+
+  /** Ask the browser to keep the data. It may take long or never answer: do not wait for it on the way to a screen. */
+  async requestPersistence(): Promise<boolean | null> {
+    const answer = await askPersistence();
+    this.#emit("facts", {});
+    return answer;
+  }
+
+  /** For the end of a page or a test: write what is left and let everything go. */
+  async dispose(): Promise<void> {
+    await this.flush().catch(() => undefined);
+    for (const session of this.#sessions.values()) session.stop();
+    this.#sessions.clear();
+    this.#locks.releaseAll();
+    this.#channel.close();
+    document.removeEventListener("visibilitychange", this.#onVisibility);
+    removeEventListener("pagehide", this.#hurry);
+    document.removeEventListener("freeze", this.#hurry);
+    this.#db.retire();
+  }
+
+  // ---- inside -------------------------------------------------------------------------------------------------
+
+  get #context(): SessionContext {
+    return {
+      db: this.#db,
+      window: this.#locks.window,
+      stamp: () => this.#stamp(),
+      onState: (session) => this.#emit("save-state", { id: session.id, state: session.state }),
+      onSaved: (session) => {
+        const rev = session.pointer?.rev ?? null;
+        this.#emit("jobs", { id: session.id, rev, isOther: false });
+        this.#channel.send({ type: "changed", id: session.id, rev: rev ?? 0 });
+      },
+      onStopped: (session, code) => (code === "newer-app" ? this.#stop(TEXT.newerApp) : this.#lose(session.id, TEXT.takenOver)),
+      onNotice: (id, text) => this.#emit("notice", { id, text }),
+    };
+  }
+
+  #stamp(): Stamp {
+    return { schema: this.#rules.schema, app: this.#options.app, core: this.#core, tables: this.#tables };
+  }
+
+  #session(id: string): Session {
+    const session = this.#sessions.get(id);
+    if (session === undefined) throw new StoreError("not-open", "The job is not open yet.");
+    return session;
+  }
+
+  async #load(id: string, isWriter: boolean): Promise<OpenResult> {
+    const reading = await readJob(this.#db, id, this.#rules).catch(async (error: unknown) => {
+      if (error instanceof StoreError && error.code === "damaged" && Array.isArray(error.cause) && isWriter) {
+        await setAside(this.#db, id, { faulty: error.cause, pointer: null });
+        this.#emit("facts", {});
+      }
+      throw error;
+    });
+    const session = new Session(id, this.#context);
+    session.isWriter = isWriter;
+    session.readOnly = reading.readOnly ?? (isWriter ? null : { code: "other-window", reason: TEXT.otherWindow });
+    if (this.#stopped !== null) session.readOnly = { code: "newer-app", reason: this.#stopped };
+    session.begin(reading.pointer, reading.job, reading.draft, reading.history);
+    session.skipTo(reading.highestRev);
+    this.#sessions.get(id)?.stop();
+    this.#sessions.set(id, session);
+    if (session.readOnly === null && reading.faulty.length > 0) {
+      await setAside(this.#db, id, reading);
+      this.#emit("facts", {});
+    }
+    return this.#result(session, reading.draft === null ? null : { job: jsonCopy(reading.draft.envelope.payload), at: reading.draft.envelope.saved_at }, reading.recovered);
+  }
+
+  #result(session: Session, draft: OpenResult["draft"], recovered: string | null): OpenResult {
+    return {
+      job: jsonCopy(session.latest!),
+      rev: session.pointer?.rev ?? 0,
+      savedAt: session.pointer?.saved_at ?? null,
+      draft,
+      recovered,
+      readOnly: session.readOnly,
+    };
+  }
+
+  async #pointers(): Promise<Pointer[]> {
+    const pointers = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").getAll());
+    return pointers.filter(isSoundPointer).sort((a, b) => b.saved_at.localeCompare(a.saved_at));
+  }
+
+  #summary({ id, title, joints, saved_at, rev, schema }: Pointer): JobSummary {
+    return { id, title, joints, savedAt: saved_at, rev, readOnly: schema > this.#rules.schema };
+  }
+
+  #migrated(envelope: Envelope<Job>): Job {
+    return migratePayload(envelope, this.#rules.schema, this.#rules.migrations);
+  }
+
+  async #changePointer(id: string, change: (pointer: Pointer) => Pointer): Promise<void> {
+    if (this.#stopped !== null) throw new StoreError("newer-app", this.#stopped);
+    try {
+      await this.#db.write(["jobs"], "strict", async (tx) => {
+        const pointer = await tx.objectStore("jobs").get(id);
+        if (pointer === undefined) throw new StoreError("not-found", "There is no such job on this tablet.");
+        await tx.objectStore("jobs").put(change(pointer));
+      });
+    } catch (error) {
+      throw toStoreError(error);
+    }
+    this.#emit("jobs", { id, rev: null, isOther: false });
+    this.#channel.send({ type: "changed", id, rev: 0 });
+  }
+
+  async #findForRestore(id: string): Promise<{ job: Job; rev: number; savedAt: string } | null> {
+    const pointer = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").get(id));
+    if (pointer === undefined) return null;
+    const session = this.#sessions.get(id);
+    const job = session?.latest ?? (await readJob(this.#db, id, { ...this.#rules, validate: null })).job;
+    return { job, rev: pointer.rev, savedAt: pointer.saved_at };
+  }
+
+  async #saveRestored(job: Job, reason: string): Promise<void> {
+    const wasOpen = this.#sessions.has(job.id);
+    const pointer = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").get(job.id));
+    if (pointer === undefined) {
+      await this.create(job, reason);
+    } else {
+      if (!wasOpen) await this.open(job.id);
+      const session = this.#session(job.id);
+      if (session.readOnly !== null) {
+        if (!wasOpen) await this.close(job.id);
+        throw new StoreError("read-only", session.readOnly.reason);
+      }
+      await this.pin(job.id, pointer.rev);
+      await session.commit(job, reason);
+    }
+    if (!wasOpen) await this.close(job.id);
+  }
+
+  async #addRevision(record: Envelope<Job>): Promise<void> {
+    await this.#db.write(["jobs", "revisions"], "strict", async (tx) => {
+      const pointer = await tx.objectStore("jobs").get(record.id);
+      if (pointer === undefined || pointer.revisions.some((mark) => mark.rev === record.rev) || record.rev >= pointer.rev) return;
+      const size = JSON.stringify(record.payload).length;
+      const mark = { rev: record.rev, saved_at: record.saved_at, reason: "From a backup", size, pinned: true, exported: false };
+      const revisions = [...pointer.revisions, mark].sort((a, b) => a.rev - b.rev);
+      await tx.objectStore("revisions").put(record);
+      await tx.objectStore("jobs").put({ ...pointer, revisions });
+    });
+  }
+
+  /** Tell older windows, now and whenever they write, which layout the records have from here on. */
+  async #announceSchema(): Promise<void> {
+    const { schema } = this.#rules;
+    const stored = await this.#db.read(["meta"], (tx) => tx.objectStore("meta").get("schema"));
+    const known = typeof stored?.value === "number" ? stored.value : null;
+    if (known !== null && known > schema) {
+      this.#stopped = TEXT.newerApp;
+      return;
+    }
+    if (known === null || known === schema) return;
+    await this.#db.write(["meta"], "strict", (tx) => tx.objectStore("meta").put({ key: "schema", value: schema }));
+    this.#channel.send({ type: "schema", schema });
+  }
+
+  /** A newer app owns the data: nothing more is written from this window. */
+  #stop(text: string): void {
+    if (this.#stopped !== null) return;
+    // Transactions that are begun here, before the handle closes, still go through unless the newer app has migrated.
+    this.#hurry();
+    this.#stopped = text;
+    for (const session of this.#sessions.values()) void session.demote({ code: "newer-app", reason: text }, false);
+    this.#locks.releaseAll();
+    this.#emit("notice", { id: null, text });
+  }
+
+  #lose(id: string, text: string): void {
+    const session = this.#sessions.get(id);
+    this.#locks.release(id);
+    if (session === undefined || session.readOnly !== null) return;
+    void session.demote({ code: "other-window", reason: text }, true);
+    this.#emit("writer", { id, isWriter: false, text });
+  }
+
+  #hear(message: Message): void {
+    if (message.type === "schema" && message.schema > this.#rules.schema) this.#stop(TEXT.newerApp);
+    if (message.type === "changed") this.#emit("jobs", { id: message.id, rev: message.rev, isOther: true });
+  }
+
+  readonly #hurry = (): void => {
+    for (const session of this.#sessions.values()) session.hurry();
+  };
+
+  readonly #onVisibility = (): void => {
+    // Hidden: the tab may be killed without another word. Visible again: failed saves get another try.
+    this.#hurry();
+  };
+
+  #emit<K extends keyof StoreEvents>(type: K, detail: StoreEvents[K]): void {
+    this.dispatchEvent(new CustomEvent(type, { detail }));
+  }
+}
