@@ -7,6 +7,7 @@ table are named by table, and the caller brings the tables' ids.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Mapping
 from typing import Any
 
@@ -322,7 +323,7 @@ SIDE = Group(
                   Choice("reflected", "Sun plus reflection from a near surface"),
                   Choice("shaded", "Always shaded or indoors"),
               )),
-        _span("length", "Length of the element", symbol="L", required=True, section="Movement", hard_min=0.0, hard_max=200000.0,
+        _span("length", "Length of the element", symbol="L", required=True, section="Movement", above=True, hard_min=0.0, hard_max=200000.0,
               soft_max=60000.0, soft_reason="An element this long usually has a movement joint in it."),
         Field("fixity", "Held at", "choice", default="middle", section="Movement",
               choices=(
@@ -480,7 +481,8 @@ def _read_field(item: Field, raw: object, path: str, reads: Reads, tables: Table
 
 
 def _refuse(reads: Reads, path: str, code: str, message: str, value: object) -> None:
-    reads.add(Issue(path, code, "error", message, value=value if isinstance(value, (str, int, float)) else None))
+    shown = value if isinstance(value, (str, int)) or (isinstance(value, float) and math.isfinite(value)) else None
+    reads.add(Issue(path, code, "error", message, value=shown))
 
 
 def _read_text(item: Field, raw: object, path: str, reads: Reads, tables: Tables, label: str) -> str | None:

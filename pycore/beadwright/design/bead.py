@@ -52,9 +52,9 @@ def bead_steps(bead: Bead) -> list[Step]:
     tool, crown = Value(bead.tool_sag_mm, "length"), Value(bead.rod_sag_mm, "length")
     steps = []
     if bead.rod_mm is not None and bead.rod_sag_mm:
-        steps.append(Step("rod-crown", "Rod crown into the bead", "s_rod", "D/2 − √(D²/4 − w²/4)", "{D}/2 − √({D}²/4 − {w}²/4)", {"D": Value(bead.rod_mm, "length"), "w": width}, crown, "Geometry of an undeformed round rod; an estimate, foam flattens", DEFINITION))
+        steps.append(Step("rod-crown", "Rod crown into the bead", "s_rod", "D/2 − √(D²/4 − w²/4)", "{D}/2 − √(({D})²/4 − ({w})²/4)", {"D": Value(bead.rod_mm, "length"), "w": width}, crown, "Geometry of an undeformed round rod; an estimate, foam flattens", DEFINITION))
     steps.append(Step("bond", "Bond depth at each face", "e", "d + s_tool + s_rod", "{d} + {t} + {r}", {"d": neck, "t": tool, "r": crown}, Value(bead.bond_mm, "length"), "Geometry of the hourglass; tooling hollow by common practice unless entered", COMMON_PRACTICE))
-    steps.append(Step("area", "Section area", "A", "w · e − segment(w, s_tool) − segment(w, s_rod)", "{w} × {e} − seg({w}, {t}) − seg({w}, {r})",
+    steps.append(Step("area", "Section area", "A", "w · e − seg(w, s_tool) − seg(w, s_rod); seg(w, s) = R²/2 · (θ − sin θ), R = (w²/4 + s²) / 2s, θ = 2 asin(w/2R)", "{w} × {e} − seg({w}, {t}) − seg({w}, {r})",
                       {"w": width, "e": Value(bead.bond_mm, "length"), "t": tool, "r": crown}, Value(bead.area_mm2, "area"), "Geometry: circular segments", DEFINITION))  # fmt: skip
     return steps
 
@@ -88,7 +88,7 @@ def strain_steps(bead: Bead, opened: StrainState, closed: StrainState) -> list[S
     steps = []
     for key, word, state in (("cold", "coldest", opened), ("hot", "hottest", closed)):
         steps.append(Step(
-            f"face-{key}", f"Face strain at the {word}", "ε_f", "arc / w − 1, with sag h = ¾ d Δ / (w + Δ)", "w = {w}, d = {d}, Δ = {x}",
+            f"face-{key}", f"Face strain at the {word}", "ε_f", "arc / w − 1; arc = ½√(c² + 16h²) + c²/(8h) · asinh(4h/c), c = w + Δ, h = ¾ d Δ / c", "with w = {w}, d = {d}, Δ = {x}",
             {"w": Value(bead.width_mm, "length"), "d": Value(bead.neck_mm, "length"), "x": Value(state.change_mm, "length")},
             Value(state.face_fraction, "percent"), source, READ,
         ))  # fmt: skip

@@ -70,7 +70,7 @@ def depth_step(chosen: RuleDepth, width_mm: float, *, is_porous: bool) -> Step:
     faces = "porous" if is_porous else "non-porous"
     return Step(
         "depth", f"Depth at mid-width, {chosen.rule.label}", "d", f"rule set at width w, {faces} faces",
-        "w = {w}: {least} to {most}", {"w": Value(width_mm, "length"), "least": Value(chosen.least_mm, "length"), "most": Value(chosen.most_mm, "length")},
+        "with w = {w}: {least} to {most}", {"w": Value(width_mm, "length"), "least": Value(chosen.least_mm, "length"), "most": Value(chosen.most_mm, "length")},
         Value(chosen.target_mm, "length"), chosen.rule.source, chosen.rule.status,
     )  # fmt: skip
 

@@ -227,7 +227,7 @@ def _sums(kind: str, opening: float, closing: float, along: float, across: float
         steps.append(total("closing", "Total closing", "c", "closing_mm", closing))
     if along or across or kind in ("lap", "mixed"):
         steps.append(Step(
-            "shear", "Shear", "s", "√(s_along² + s_across²)", "√({p}² + {q}²)", {"p": Value(along, "length"), "q": Value(across, "length")},
+            "shear", "Shear", "s", "√(s_along² + s_across²)", "√(({p})² + ({q})²)", {"p": Value(along, "length"), "q": Value(across, "length")},
             Value(shear, "length"), "Definition: two directions of slip at right angles", DEFINITION,
         ))  # fmt: skip
     return steps

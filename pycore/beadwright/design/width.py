@@ -154,7 +154,7 @@ def width_steps(movement: Movement, capability: Capability, class_label: str, cl
             total = Value(capability.total_fraction, "number")
             if movement.shear_mm:
                 steps.append(Step("width-swing", f"Width for the swing, {class_label}, total swing", "w_t", "[m + √(m² + K (m² + s²))] / K, m = o + c, K = (1 + C)² − 1",
-                                  "m = {o} + {c}, s = {s}, C = {C}", {"o": opening, "c": closing, "s": shear, "C": total}, result, _SWING_SOURCE + "; shear added as in the each-way form", READ))  # fmt: skip
+                                  "with m = {o} + {c}, s = {s}, C = {C}", {"o": opening, "c": closing, "s": shear, "C": total}, result, _SWING_SOURCE + "; shear added as in the each-way form", READ))  # fmt: skip
             else:
                 steps.append(Step("width-swing", f"Width for the swing, {class_label}, total swing", "w_t", "(o + c) / C", "({o} + {c}) / {C}", {"o": opening, "c": closing, "C": total}, result, _SWING_SOURCE, READ))
         elif need.key == "closing":
@@ -176,7 +176,7 @@ def _opening_step(need: Need, opening: Value, shear: Value, capability: Capabili
     if need.key == "shear":
         return Step("width-shear", f"Width for shear, {class_label}", "w_s", "s / √(2 S_e + S_e²)", "{s} / √(2 × {S} + {S}²)", {"s": shear, "S": extension}, result, _EXTENSION_SOURCE, READ)
     return Step("width-opening-shear", f"Width for opening with shear, {class_label}", "w_os", "[o + √(o² + K (o² + s²))] / K, K = (1 + S_e)² − 1",
-                "[{o} + √({o}² + K × ({o}² + {s}²))] / K, S_e = {S}", {"o": opening, "s": shear, "S": extension}, result, _EXTENSION_SOURCE, READ)  # fmt: skip
+                "[{o} + √(({o})² + K × (({o})² + ({s})²))] / K with S_e = {S}", {"o": opening, "s": shear, "S": extension}, result, _EXTENSION_SOURCE, READ)  # fmt: skip
 
 
 def tolerance_steps(parts_mm: Mapping[str, float], worst_mm: float, rss_mm: float, required_mm: float, design_mm: float, increment_mm: float, chosen_mm: float) -> list[Step]:
@@ -185,6 +185,6 @@ def tolerance_steps(parts_mm: Mapping[str, float], worst_mm: float, rss_mm: floa
     names = ", ".join(parts_mm)
     return [
         Step("tolerance-worst", "Tolerance, worst case", "t_w", f"sum of {names}", " + ".join(f"{{{key}}}" for key in parts_mm), inputs, Value(worst_mm, "length"), "Negative tolerance added arithmetically, from memory of ASTM C1472", "memory"),
-        Step("tolerance-rss", "Tolerance, root of the sum of squares", "t_r", f"√(sum of squares of {names})", "√(" + " + ".join(f"{{{key}}}²" for key in parts_mm) + ")", inputs, Value(rss_mm, "length"), "Common practice for independent deviations", COMMON_PRACTICE),
+        Step("tolerance-rss", "Tolerance, root of the sum of squares", "t_r", f"√(sum of squares of {names})", "√(" + " + ".join(f"({{{key}}})²" for key in parts_mm) + ")", inputs, Value(rss_mm, "length"), "Common practice for independent deviations", COMMON_PRACTICE),
         Step("width-design", "Design width", "w_des", "w_req + tolerance, rounded up", "{w} + {t}, up to the next {i}", {"w": Value(required_mm, "length"), "t": Value(chosen_mm, "length"), "i": Value(increment_mm, "length")}, Value(design_mm, "length"), "Definition: rounded up, never down", DEFINITION),
     ]

@@ -101,13 +101,14 @@ def window_steps(width_mm: float, movement: Movement, capability: Capability, cl
     per_k = Value(rate, "rate")
     cold = sum(item.rate_mm_per_k * item.cold_c for item in movement.elements) / rate
     hot = sum(item.rate_mm_per_k * item.hot_c for item in movement.elements) / rate
+    mean = "T_cold and T_hot are the sides' means, weighted by α L." if len({(item.hot_c, item.cold_c) for item in movement.elements}) > 1 else ""
     return [
         Step("window-to", "Sealing window, upper end", "T_to", "T_cold + (o_max − o_other) / Σ(α L)", "{T} + ({m} − {f}) / {r}",
              {"T": Value(cold, "temperature"), "m": Value(open_slack, "length"), "f": Value(movement.fixed_opening_mm, "length"), "r": per_k},
-             Value(window.to_c, "temperature"), "Definition: the opening then just uses up the class", DEFINITION,
-             remark="Held at the hottest that the elements get." if window.high_limited_by == "element" else ""),
+             Value(cold + (open_slack - movement.fixed_opening_mm) / rate, "temperature"), "Definition: the opening then just uses up the class", DEFINITION,
+             remark=("Beyond the hottest that the elements get, so opening sets no limit. " if window.high_limited_by == "element" else "") + mean),
         Step("window-from", "Sealing window, lower end", "T_from", "T_hot − (c_max − c_other) / Σ(α L)", "{T} − ({m} − {f}) / {r}",
              {"T": Value(hot, "temperature"), "m": Value(close_slack, "length"), "f": Value(movement.fixed_closing_mm, "length"), "r": per_k},
-             Value(window.from_c, "temperature"), "Definition: the closing then just uses up the class", DEFINITION,
-             remark="Held at the coldest that the elements get." if window.low_limited_by == "element" else ""),
+             Value(hot - (close_slack - movement.fixed_closing_mm) / rate, "temperature"), "Definition: the closing then just uses up the class", DEFINITION,
+             remark=("Beyond the coldest that the elements get, so closing sets no limit. " if window.low_limited_by == "element" else "") + mean),
     ]  # fmt: skip

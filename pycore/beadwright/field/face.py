@@ -136,7 +136,7 @@ def _dew(face: Mapping[str, Any], surface: float | None, project: Project, check
         return None
     dew = humidity.dew_point_c(air, damp)
     steps.append(Step(
-        "dew", "Dew point", "T_d", "C γ / (B − γ), γ = ln RH + B T / (C + T); B = 17.62, C = 243.12 °C, T in °C", "T = {T}, RH = {R}",
+        "dew", "Dew point", "T_d", "C γ / (B − γ), γ = ln RH + B T / (C + T); B = 17.62, C = 243.12 °C, T in °C", "with T = {T}, RH = {R}",
         {"T": Value(air, "temperature", "degC"), "R": Value(damp, "percent")}, Value(dew, "temperature", "degC"), "Magnus formula with the WMO constants, over water", READ,
     ))  # fmt: skip
     coldest = None if surface is None else min(item for item in (surface, face["surface_b"]) if item is not None)
@@ -190,7 +190,7 @@ def _at_width(judged: Judgement, project: Project, mean: float, least: float, mo
                  {"w": now, "r": rate, "T": Value(reference, "temperature"), "s": Value(sum(temperatures) / 2, "temperature")}, Value(mean - change, "length"),
                  "Definition: the elements grow as they warm, so the joint narrows", DEFINITION, remark="Each side with its own temperature." if temperatures[0] != temperatures[1] else ""),
         ]  # fmt: skip
-    steps.append(Step("face-strain", "Average strain at the coldest", "ε", "√((w + o)² + s²) / w − 1", "√(({w} + {o})² + {s}²) / {w} − 1",
+    steps.append(Step("face-strain", "Average strain at the coldest", "ε", "√((w + o)² + s²) / w − 1", "√(({w} + {o})² + ({s})²) / {w} − 1",
                       {"w": now, "o": Value(opening, "length"), "s": Value(shear, "length")}, Value(opened, "percent"), "Definition: stretch of the line across the bead", DEFINITION))  # fmt: skip
     _green(movement, project, mean, face, checks, steps, answer)
     return answer

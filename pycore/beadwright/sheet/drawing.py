@@ -69,7 +69,7 @@ def _path(d: str, css: str, fill: str, weight: float = 1.6) -> str:
 
 
 def _text(x: float, y: float, text: str, css: str, size: float, anchor: str = "middle") -> str:
-    return f'<text x="{_n(x)}" y="{_n(y)}" class="{css}" font-size="{size:g}" font-family="{_FONT}" text-anchor="{anchor}" fill="{_INK}">{escape(text)}</text>'
+    return f'<text x="{_n(x)}" y="{_n(y)}" class="{css}" font-size="{size:g}" font-family="{_FONT}" text-anchor="{anchor}" fill="{_INK}" stroke="#fbfaf6" stroke-width="5" stroke-linejoin="round" paint-order="stroke">{escape(text)}</text>'
 
 
 def _hatch(x1: float, y1: float, x2: float, y2: float, css: str, step: float, leaning: int) -> str:
@@ -138,9 +138,10 @@ def _butt(section: Section) -> list[str]:
     rod_height = 0.0
     if section.rod_mm:
         rod_height = math.pi / 4 * section.rod_mm**2 / now
-    deep = bond + max(rod_height - section.rod_sag_mm, 0.0) + 0.25 * width
-    widest = max(section.largest_width_mm, now, width)
-    scale = min((CANVAS_H - _TOP - 40) / max(deep, 1.25 * bond), 330.0 / widest)
+    # The scale depends on nothing that moves, so that the frames of one joint can be compared.
+    deep = bond + (section.rod_mm or 0.5 * width)
+    widest = max(section.largest_width_mm, width)
+    scale = min((CANVAS_H - _TOP - 40) / deep, 330.0 / widest)
     middle = CANVAS_W / 2
     left, right = middle - now * scale / 2, middle + now * scale / 2
     top, bottom = _TOP, CANVAS_H - 34
@@ -149,13 +150,11 @@ def _butt(section: Section) -> list[str]:
     back = top + bond * scale
     tool_px, crown_px = tool * scale, crown * scale
     if section.rod_mm:
-        rod_bottom = back - crown_px + rod_height * scale
-        side_bottom = max(back, rod_bottom - max(crown_px, 0.18 * now * scale))
-        rod = f"M{_n(left)} {_n(back)}{_arc(left, back, right, back, -crown_px)}L{_n(right)} {_n(min(side_bottom, bottom - 4))}" + _arc(
-            right, min(side_bottom, bottom - 4), left, min(side_bottom, bottom - 4), min(rod_bottom, bottom - 2) - min(side_bottom, bottom - 4)
-        )
-        parts.append(_path(rod + "Z", "bw-rod", "#ffffff", 1.2))
-        parts.append(_text(middle, min((back - crown_px + min(rod_bottom, bottom)) / 2 + 7, bottom - 12), section.rod_text, "bw-text", 16))
+        rod_bottom = min(back - crown_px + rod_height * scale, bottom - 2)
+        side_bottom = min(max(back, rod_bottom - max(crown_px, 0.18 * now * scale)), bottom - 4)
+        rod = f"M{_n(left)} {_n(back)}{_arc(left, back, right, back, -crown_px)}L{_n(right)} {_n(side_bottom)}{_arc(right, side_bottom, left, side_bottom, rod_bottom - side_bottom)}Z"
+        parts.append(_path(rod, "bw-rod", "#ffffff", 1.2))
+        parts.append(_text(middle, min((back - crown_px + rod_bottom) / 2 + 7, bottom - 12), section.rod_text, "bw-rod-text", 16))
     elif section.has_tape:
         parts.append(_path(f"M{_n(left)} {_n(back)}H{_n(right)}V{_n(back + 4)}H{_n(left)}Z", "bw-rod", "#ffffff", 1.2))
         parts.append(_text(middle, back + 24, section.rod_text, "bw-text", 16))

@@ -23,7 +23,7 @@ def value_text(value: Value | None, system: str) -> str:
     if kind == "area":
         return f"{plain(number, 1)} mm²" if system == METRIC else f"{plain(number / 645.16, 4)} in²"
     if kind == "rate":
-        return f"{plain(number, 4)} mm/K" if system == METRIC else f"{plain(number / 25.4 / 1.8, 6)} in/°F"
+        return f"{plain(number, 5)} mm/K" if system == METRIC else f"{plain(number / 25.4 / 1.8, 6)} in/°F"
     if kind == "length":
         return f"{plain(number, 3)} mm" if system == METRIC else f"{plain(number / 25.4, 4)} in"
     if kind == "percent":
@@ -38,7 +38,7 @@ def value_text(value: Value | None, system: str) -> str:
 def step_lines(step: Step, system: str) -> dict[str, Any]:
     """A step for the answer: title, symbol, formula, the numbers put in, result, source."""
     texts = {name: value_text(value, system) for name, value in step.inputs.items()}
-    numbers = _PLACE.sub(lambda match: texts.get(match[1], match[0]), step.template)
+    numbers = _PLACE.sub(lambda match: _put_in(match, texts, step.template), step.template)
     lines: dict[str, Any] = {
         "key": step.key,
         "title": step.title,
@@ -53,6 +53,13 @@ def step_lines(step: Step, system: str) -> dict[str, Any]:
     if step.remark:
         lines["remark"] = step.remark
     return lines
+
+
+def _put_in(match: re.Match[str], texts: dict[str, str], template: str) -> str:
+    """The number for one place; a negative one is bracketed after an operator."""
+    text = texts.get(match[1], match[0])
+    before = template[: match.start()].rstrip()
+    return f"({text})" if text.startswith("−") and before.endswith(("+", "−", "×", "/", "·", "-")) else text
 
 
 def length(value_mm: float | None, system: str) -> str:
