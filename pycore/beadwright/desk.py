@@ -8,15 +8,17 @@ from __future__ import annotations
 
 import json
 from collections.abc import Iterable, Mapping
-from functools import cache
+from functools import cache, lru_cache
 from typing import Any
+
+from attrs import frozen
 
 from . import __version__, catalogue
 from .design.cautions import cautions_of_job, cautions_of_joint
-from .design.inputs import OWN_CLASS, Project, read_joints, read_project
-from .design.joint import Judgement, judge
+from .design.inputs import OWN_CLASS, Project, joint_rows, read_joint, read_project
+from .design.joint import judge
 from .field.face import at_the_face
-from .fields import GROUPS, Choice, Field
+from .fields import GROUPS, Choice, Field, Reads
 from .job import blank, blank_row, compare, merge, open_bytes, to_bytes
 from .quantity import INCH, METRIC
 from .sheet import joint_sheet, printed, schedule
@@ -26,6 +28,7 @@ from .working import Issue
 __all__ = ["blank", "blank_row", "compare", "evaluate", "export", "forms", "frames", "merge", "open_file"]
 
 EXPORT_KINDS = ("job", "sheet", "text", "schedule")
+_NOT_SHARED = ("joints", "takeoff", "cure", "surveys")
 
 
 def _core() -> dict[str, Any]:
@@ -135,21 +138,23 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
     dict
         `core`, `issues`, `readings`, `joints`, `takeoff`, `cure`, `surveys`, `cautions`, `facts`.
     """
-    project = read_project(job)
+    shared = _shared_text(job)
+    project = _project(shared)
+    rows = Reads(project.system)
     wanted = None if only is None else set(only)
     answers: dict[str, Any] = {}
-    by_joint: dict[str, list[catalogue.Caution]] = {}
-    for joint in read_joints(job, project):
-        judged = judge(joint, project)
-        found = cautions_of_joint(judged, project)
-        by_joint[joint.id] = found
-        face = at_the_face(judged, project)
-        full = wanted is None or joint.id in wanted
-        answers[joint.id] = joint_sheet.joint_dict(judged, face, project.system, [item.id for item in found], full=full)
+    by_joint: dict[str, tuple[catalogue.Caution, ...]] = {}
+    issues, readings = list(project.reads.issues), dict(project.reads.readings)
+    for joint_id, path, row in joint_rows(job, rows):
+        one = _answer(shared, joint_id, path, _text(row), full=wanted is None or joint_id in wanted)
+        answers[joint_id] = one.answer
+        by_joint[joint_id] = one.cautions
+        issues += one.issues
+        readings.update(one.readings)
     return {
         "core": _core(),
-        "issues": [issue.as_dict() for issue in project.reads.issues],
-        "readings": project.reads.readings,
+        "issues": [issue.as_dict() for issue in [*rows.issues, *issues]],
+        "readings": readings,
         "joints": answers,
         "takeoff": {},
         "cure": {},
@@ -159,7 +164,46 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
     }
 
 
-def _cautions(project: Project, by_joint: Mapping[str, list[catalogue.Caution]]) -> list[dict[str, Any]]:
+@frozen
+class _Answer:
+    """One joint's part of the answer."""
+
+    answer: dict[str, Any]
+    cautions: tuple[catalogue.Caution, ...]
+    issues: tuple[Issue, ...]
+    readings: dict[str, dict[str, object]]
+
+
+def _text(value: object) -> str:
+    """A decoded JSON value as text: the key under which an unchanged part is not judged again."""
+    return json.dumps(value, ensure_ascii=False, default=str)
+
+
+def _shared_text(job: object) -> str:
+    """Everything of a job that all joints share."""
+    if not isinstance(job, Mapping):
+        return _text(job)
+    return _text({key: value for key, value in job.items() if key not in _NOT_SHARED})
+
+
+# The core is pure, so an answer may be kept: an edit to one joint judges that joint alone.
+@lru_cache(maxsize=4)
+def _project(shared: str) -> Project:
+    return read_project(json.loads(shared))
+
+
+@lru_cache(maxsize=4096)
+def _answer(shared: str, joint_id: str, path: str, row: str, *, full: bool) -> _Answer:
+    project = _project(shared)
+    joint = read_joint(joint_id, path, json.loads(row), project)
+    judged = judge(joint, project)
+    found = tuple(cautions_of_joint(judged, project))
+    face = at_the_face(judged, project)
+    answer = joint_sheet.joint_dict(judged, face, project.system, [item.id for item in found], full=full)
+    return _Answer(answer, found, tuple(joint.reads.issues), joint.reads.readings)
+
+
+def _cautions(project: Project, by_joint: Mapping[str, tuple[catalogue.Caution, ...]]) -> list[dict[str, Any]]:
     joints_of: dict[str, list[str]] = {}
     rows: dict[str, catalogue.Caution] = {item.id: item for item in cautions_of_job(project)}
     for joint_id, found in by_joint.items():
@@ -185,14 +229,6 @@ def _facts(project: Project) -> list[dict[str, str]]:
     return facts
 
 
-def _judged(job: object, joint_id: str) -> tuple[Project, Judgement | None]:
-    project = read_project(job)
-    for joint in read_joints(job, project):
-        if joint.id == joint_id:
-            return project, judge(joint, project)
-    return project, None
-
-
 def frames(job: object, joint_id: str) -> dict[str, Any]:
     """The section of one joint from its coldest to its hottest, for the temperature scrubber.
 
@@ -201,10 +237,11 @@ def frames(job: object, joint_id: str) -> dict[str, Any]:
     dict
         `frames` (each `fraction`, `title`, `lines`, `drawing`), `start` (index of the sealing temperature), `caption`.
     """
-    project, judged = _judged(job, joint_id)
-    if judged is None:
-        return {"frames": [], "start": 0, "caption": "This joint is not in the job."}
-    return joint_sheet.frames(judged, project.system)
+    project = _project(_shared_text(job))
+    for found, path, row in joint_rows(job, Reads(project.system)):
+        if found == joint_id:
+            return joint_sheet.frames(judge(read_joint(found, path, row, project), project), project.system)
+    return {"frames": [], "start": 0, "caption": "This joint is not in the job."}
 
 
 # ---- files ------------------------------------------------------------------------------------

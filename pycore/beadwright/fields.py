@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping
+from functools import lru_cache
 from typing import Any
 
 from attrs import field, frozen
@@ -539,25 +540,25 @@ def _read_quantity(item: Field, raw: object, path: str, reads: Reads, tables: Ta
     unit = reading.unit
     if reading.is_bare:
         reads.add(Issue(path, "unit-missing", "note", f"{_name(item, label)} has no unit; read as {quantity.sign_of(units[0])}.", value=raw))
-    reads.readings[path] = _reads_as(item, reading, reads.system)
+    reads.readings[path] = dict(_reads_as(item.kind, reading.value, reading.unit))
     good = _within(item, reading.value, path, reads, label, lambda v: quantity.show(v, item.kind, unit), unit)
     return reading.value if good else None
 
 
-def _reads_as(item: Field, reading: quantity.Reading, system: str) -> dict[str, object]:
+_CORE_UNIT = {"length": "mm", "temperature": "degC", "temperature_difference": "K", "expansion": "1/K", "percent": "fraction",
+              "duration": "h", "irradiance": "W/m2", "film": "W/m2K"}  # fmt: skip
+
+
+@lru_cache(maxsize=4096)
+def _reads_as(kind: str, value: float, unit: str) -> tuple[tuple[str, object], ...]:
     """The value in core units and in the other system's habit, to stand beside what was typed."""
-    other = _OTHER.get((item.kind, reading.unit))
-    if item.kind == "length" and reading.unit in ("in", "ft", "yd"):
-        text = quantity.show(reading.value, "length", "mm") if abs(reading.value) < 1000 else quantity.show_span(reading.value, METRIC)
-    elif item.kind == "length":
-        text = quantity.show_length(reading.value, INCH) if abs(reading.value) < 600 else quantity.show_span(reading.value, INCH)
-    elif other:
-        text = quantity.show(reading.value, item.kind, other)
+    if kind == "length" and unit in ("in", "ft", "yd"):
+        text = quantity.show(value, "length", "mm") if abs(value) < 1000 else quantity.show_span(value, METRIC)
+    elif kind == "length":
+        text = quantity.show_length(value, INCH) if abs(value) < 600 else quantity.show_span(value, INCH)
     else:
-        text = quantity.show(reading.value, item.kind, reading.unit)
-    core = {"length": "mm", "temperature": "degC", "temperature_difference": "K", "expansion": "1/K", "percent": "fraction",
-            "duration": "h", "irradiance": "W/m2", "film": "W/m2K"}[item.kind]  # fmt: skip
-    return {"value": reading.value, "unit": core, "reads": f"= {text}", "short": text}
+        text = quantity.show(value, kind, _OTHER.get((kind, unit), unit))
+    return (("value", value), ("unit", _CORE_UNIT[kind]), ("reads", f"= {text}"), ("short", text))
 
 
 _OTHER = {

@@ -14,7 +14,7 @@ from attrs import frozen
 
 from .. import catalogue
 from ..physics import thermal
-from ..working import COMMON_PRACTICE, DEFINITION, ENTERED, MEMORY, READ, Step, Value
+from ..working import DEFINITION, ENTERED, MEMORY, READ, Step, Value
 from .inputs import JointInput, Project
 
 SHARE_BY_FIXITY = {"middle": 0.5, "far-end": 1.0, "near-end": 0.0}
@@ -35,6 +35,9 @@ class Element:
     cold_c: float
     reversible_fraction: float
     irreversible_fraction: float
+    reversible_source: tuple[str, str]
+    irreversible_source: tuple[str, str]
+    lacks_moisture_figure: bool
     steps: tuple[Step, ...]
 
     @property
@@ -46,16 +49,6 @@ class Element:
     def along_rate_mm_per_k(self) -> float:
         """Movement along the joint per kelvin."""
         return self.expansion_per_k * self.along_mm
-
-
-def status_of(source: str) -> str:
-    """Tell a figure read in its source from one remembered, by the words of the source."""
-    lowered = source.lower()
-    if "memory" in lowered:
-        return MEMORY
-    if "common practice" in lowered:
-        return COMMON_PRACTICE
-    return READ
 
 
 def read_element(key: str, joint: JointInput, project: Project) -> Element | None:
@@ -77,8 +70,8 @@ def read_element(key: str, joint: JointInput, project: Project) -> Element | Non
         return None
     expansion = values["expansion"]
     if expansion is None:
-        expansion, source = substrate.expansion_per_k, _column_source(substrate, "expansion_per_k")
-        status = _column_status(substrate, "expansion_per_k")
+        expansion, source = substrate.expansion_per_k, substrate.source_of("expansion_per_k")
+        status = substrate.status_of("expansion_per_k")
     else:
         source, status = "entered by the user", ENTERED
     effective = values["length"] * share
@@ -91,23 +84,22 @@ def read_element(key: str, joint: JointInput, project: Project) -> Element | Non
         f"expansion-{mark}", f"Side {mark}: expansion of {substrate.label}", f"α_{mark}", "table", "",
         {}, Value(expansion, "expansion"), source, status,
     ))  # fmt: skip
-    reversible = values["moisture_reversible"]
-    irreversible = values["moisture_irreversible"]
-    reversible = substrate.moisture_reversible_fraction if reversible is None else reversible
-    irreversible = substrate.moisture_irreversible_fraction if irreversible is None else irreversible
+    reversible, reversible_source = _moisture(values, substrate, "moisture_reversible")
+    irreversible, irreversible_source = _moisture(values, substrate, "moisture_irreversible")
+    lacks = reversible is None or irreversible is None
     remaining = (irreversible or 0.0) * (1.0 - (values["moisture_done"] or 0.0))
-    along = values["length_along"] or 0.0
-    return Element(key, f"Side {mark}", substrate, expansion, effective, along, hot, cold, reversible or 0.0, remaining, tuple(steps))
+    return Element(
+        key, f"Side {mark}", substrate, expansion, effective, values["length_along"] or 0.0, hot, cold,
+        reversible or 0.0, remaining, reversible_source, irreversible_source, lacks, tuple(steps),
+    )  # fmt: skip
 
 
-def _column_source(row: Any, column: str) -> str:
-    part = (row.sources or {}).get(column)
-    return part["source"] if part else row.source
-
-
-def _column_status(row: Any, column: str) -> str:
-    part = (row.sources or {}).get(column)
-    return str(part["status"] if part else row.status)
+def _moisture(values: Mapping[str, Any], substrate: catalogue.Substrate, key: str) -> tuple[float | None, tuple[str, str]]:
+    """A moisture strain with its source and status; None where neither user nor table gives one."""
+    if values[key] is not None:
+        return values[key], ("entered by the user", ENTERED)
+    column = f"{key}_fraction"
+    return getattr(substrate, column), (substrate.source_of(column), substrate.status_of(column))
 
 
 def absorption(values: Mapping[str, Any], substrate: catalogue.Substrate) -> tuple[float, str, str]:

@@ -45,6 +45,7 @@ class JointInput:
     face: Mapping[str, Any]
     has_face: bool
     has_errors: bool
+    reads: Reads = field(repr=False)
 
 
 @frozen
@@ -194,38 +195,40 @@ def _sealant(name: str, values: Mapping[str, Any], path: str, reads: Reads) -> S
     return Sealant(name, values["name"] or name, family, chosen, label, source, extension, compression, total, values)
 
 
-def read_joints(job: object, project: Project) -> list[JointInput]:
-    """Every usable joint of the job, in order."""
+def joint_rows(job: object, reads: Reads) -> Iterator[tuple[str, str, Mapping[str, Any]]]:
+    """Every usable joint of the job, in order, as (id, JSON Pointer, raw row)."""
     raw = job.get("joints") if isinstance(job, Mapping) else None
-    found: list[JointInput] = []
     taken: set[str] = set()
-    for index, row in rows(raw, "/joints", "joint", project.reads):
-        name = _row_id(row, f"/joints/{index}", "joint", taken, project.reads)
+    for index, row in rows(raw, "/joints", "joint", reads):
+        path = f"/joints/{index}"
+        name = _row_id(row, path, "joint", taken, reads)
         taken.add(name)
-        found.append(_read_joint(name, row, f"/joints/{index}", project))
-    return found
+        yield name, path, row
 
 
-def _read_joint(name: str, row: Mapping[str, Any], path: str, project: Project) -> JointInput:
-    reads, tables = project.reads, project.tables
-    start = len(reads.issues)
+def read_joint(name: str, path: str, row: Mapping[str, Any], project: Project) -> JointInput:
+    """Read one joint; its findings and readings are kept with it."""
+    reads, tables = Reads(project.system), project.tables
     values = read_group(JOINT, row, path, reads, tables)
     sides = [read_group(SIDE, row.get(key), f"{path}/{key}", reads, tables, label=label) for key, label in (("side_a", "Side A"), ("side_b", "Side B"))]
     causes = []
     for index, cause in rows(row.get("causes"), f"{path}/causes", "cause", reads, limit=100):
-        read = read_group(CAUSE, cause, f"{path}/causes/{index}", reads, tables, label=f"Cause {index + 1}")
-        causes.append(read)
+        causes.append(read_group(CAUSE, cause, f"{path}/causes/{index}", reads, tables, label=f"Cause {index + 1}"))
     _require(values, sides, path, reads, tables)
     check_sealing_range(values, path, reads)
-    has_errors = any(issue.severity == "error" for issue in reads.issues[start:])
-    raw_face = row.get("face")
-    face = read_group(FACE, raw_face, f"{path}/face", reads, tables, label="At the face")
+    has_errors = any(issue.severity == "error" for issue in reads.issues)
+    face = _read_face(row.get("face"), f"{path}/face", reads, tables)
+    has_face = any(face[key] is not None for key in ("width", "width_least", "width_most", "surface", "air", "humidity"))
+    return JointInput(name, path, values, sides[0], sides[1], tuple(causes), face, has_face, has_errors, reads)
+
+
+def _read_face(raw: object, path: str, reads: Reads, tables: Tables) -> dict[str, Any]:
+    face = read_group(FACE, raw, path, reads, tables, label="At the face")
     least, most = face["width_least"], face["width_most"]
     if least is not None and most is not None and least > most:
-        reads.add(Issue(f"{path}/face/width_least", "contradiction", "error", "At the face: the narrowest reading is wider than the widest."))
+        reads.add(Issue(f"{path}/width_least", "contradiction", "error", "At the face: the narrowest reading is wider than the widest."))
         face["width_least"] = face["width_most"] = None
-    has_face = any(face[key] is not None for key in ("width", "width_least", "width_most", "surface", "air", "humidity"))
-    return JointInput(name, path, values, sides[0], sides[1], tuple(causes), face, has_face, has_errors)
+    return face
 
 
 def _require(values: Mapping[str, Any], sides: list[dict[str, Any]], path: str, reads: Reads, tables: Tables) -> None:

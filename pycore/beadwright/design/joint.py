@@ -194,7 +194,7 @@ def _judge(joint: JointInput, project: Project, sealant: Sealant, use: catalogue
     return Judgement(
         joint, sealant, use, verdict, reason, elements, capability, movement, widths, rule_depth,
         () if kind == "lap" else tuple(depth.all_rules(basis, is_porous=is_porous)), neck, "entered" if values["neck"] is not None else "rule",
-        rod, shape, opened, closed, sealing, tuple(steps), tuple(notes),
+        rod, shape, opened, closed, sealing, tuple(steps), tuple(dict.fromkeys(notes)),
     )  # fmt: skip
 
 
@@ -245,23 +245,11 @@ def _widths(joint: JointInput, project: Project, sealant: Sealant, capability: w
     other = width.EACH_WAY if capability.convention == width.TOTAL_SWING else width.TOTAL_SWING
     other_capability = width.capability_of(sealant, other)
     other_required = width.governing(width.needs(movement, other_capability, gap)).width_mm if other_capability.is_known else None
-    scale = width.greatest_scale(least_judged, lambda factor: _scaled(movement, factor), capability, gap) if judged > 0 else None
+    scale = width.greatest_scale(judged, movement, capability, gap) if judged > 0 else None
     return Widths(
         tuple(found), top, top.width_mm, parts, worst, rss, design(top.width_mm, worst), design(top.width_mm, rss), designed,
         least, least_name, most, most_name, present, judged, use, classes, smallest, other_required, other, scale, increment,
     )  # fmt: skip
-
-
-def _scaled(movement: Movement, factor: float) -> tuple[float, float, float]:
-    """Opening, closing and shear with the elements' lengths across the joint multiplied by a factor."""
-    if movement.kind == "lap":
-        moved = movement.shear_mm**2 - movement.across_mm**2
-        along = max(0.0, moved) ** 0.5 - movement.entered_shear_mm
-        shear = ((along * factor + movement.entered_shear_mm) ** 2 + movement.across_mm**2) ** 0.5
-        return movement.opening_mm, movement.closing_mm, shear
-    opening = (movement.opening_mm - movement.entered_opening_mm) * factor + movement.entered_opening_mm
-    closing = (movement.closing_mm - movement.entered_closing_mm) * factor + movement.entered_closing_mm
-    return opening, closing, movement.shear_mm
 
 
 def _by_class(sealant: Sealant, capability: width.Capability, movement: Movement, gap: float, design: Any, present_mm: float | None) -> tuple[tuple[ClassRow, ...], catalogue.MovementClass | None]:
@@ -315,7 +303,10 @@ def _notes(joint: JointInput, project: Project, sealant: Sealant, movement: Move
         notes.append(Note("warning", "The depth entered is outside what the rule set in force allows."))
     if widths.practical_most_mm is not None and widths.design_mm > widths.practical_most_mm + 1e-9:
         notes.append(Note("warning", f"The width needed is above the greatest that is practical ({widths.practical_most_name}): more joints, a higher class, or another detail."))
-    low, high = (sealant.family.movement_low_fraction, sealant.family.movement_high_fraction) if sealant.family else (None, None)
-    if high is not None and sealant.extension_fraction is not None and sealant.extension_fraction > high + 1e-9:
-        notes.append(Note("warning", f"{sealant.class_label} is more than is usual for {sealant.family.label}; check the data sheet."))  # type: ignore[union-attr]
+    for item in movement.elements:
+        if item.lacks_moisture_figure and item.effective_mm:
+            notes.append(Note("note", f"The tables give no moisture movement for {item.substrate.label.lower()}; none is counted unless you enter it."))
+    family = sealant.family
+    if family is not None and sealant.extension_fraction is not None and sealant.extension_fraction > family.movement_high_fraction + 1e-9:
+        notes.append(Note("warning", f"{sealant.class_label} is more than is usual for {family.label.lower()}; check the data sheet."))
     return notes

@@ -13,7 +13,7 @@ from attrs import frozen
 
 from ..physics import strain, thermal
 from ..working import DEFINITION, MEMORY, Step, Value
-from .elements import Element, _column_source, _column_status
+from .elements import Element
 
 _GUIDE = "Movement guide practice (linear expansion), from memory of ASTM C1472; also FHWA and TM 5-809-3 worked cases"
 
@@ -161,21 +161,21 @@ def _moisture(item: Element, steps: list[Step]) -> list[Cause]:
     rows: list[Cause] = []
     if item.reversible_fraction and item.effective_mm:
         swing = thermal.moisture_change_mm(item.effective_mm, item.reversible_fraction)
-        source = _column_source(item.substrate, "moisture_reversible_fraction")
+        source, status = item.reversible_source
         steps.append(Step(
             f"moisture-{mark}", f"{item.label}: wetting and drying", f"m_{mark}", "R · L", "{R} × {L}",
             {"R": Value(item.reversible_fraction, "percent"), "L": Value(item.effective_mm, "length")}, Value(swing, "length"),
-            source, _column_status(item.substrate, "moisture_reversible_fraction"), remark="State at sealing unknown: counted both ways.",
+            source, status, remark="State at sealing unknown: counted both ways.",
         ))  # fmt: skip
         rows.append(Cause(f"moisture-{mark}", f"Wetting and drying, {side}", swing, swing, 0.0, source))
     if item.irreversible_fraction and item.effective_mm:
         change = thermal.moisture_change_mm(item.effective_mm, item.irreversible_fraction)
         grows = change > 0
-        source = _column_source(item.substrate, "moisture_irreversible_fraction")
+        source, status = item.irreversible_source
         steps.append(Step(
             f"lasting-{mark}", f"{item.label}: {'lasting growth' if grows else 'lasting shrinkage'}", f"i_{mark}", "I · L", "{I} × {L}",
             {"I": Value(item.irreversible_fraction, "percent"), "L": Value(item.effective_mm, "length")}, Value(change, "length"),
-            source, _column_status(item.substrate, "moisture_irreversible_fraction"),
+            source, status,
             remark="Growth closes the joint." if grows else "Shrinkage opens the joint.",
         ))  # fmt: skip
         rows.append(Cause(f"lasting-{mark}", f"{'Lasting growth' if grows else 'Lasting shrinkage'}, {side}", max(0.0, -change), max(0.0, change), 0.0, source))

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 
 from attrs import frozen
 
@@ -120,28 +120,56 @@ def use_of(width_mm: float, opening_mm: float, closing_mm: float, shear_mm: floa
     return governing(needs_of(opening_mm, closing_mm, shear_mm, capability, closed_gap_mm)).width_mm / width_mm
 
 
-def greatest_scale(width_mm: float, scaled: Callable[[float], tuple[float, float, float]], capability: Capability, closed_gap_mm: float) -> float | None:
-    """How many times longer the elements may be at a width; None when nothing depends on length or nothing fits.
+def greatest_scale(width_mm: float, movement: Movement, capability: Capability, closed_gap_mm: float) -> float | None:
+    """How many times longer the elements may be at a width.
 
-    `scaled(factor)` gives opening, closing and shear with every length multiplied by the factor.
+    Parameters
+    ----------
+    width_mm : float
+        Width that is to be kept. [mm]
+    movement : Movement
+        The budget at the present lengths.
+    capability : Capability
+        Class under the convention of the project.
+    closed_gap_mm : float
+        Gap that must remain at the hottest. [mm]
+
+    Returns
+    -------
+    scale : float or None
+        Factor on every length across the joint; None when nothing depends on length, or when
+        the movements that do not depend on it use the class up.
+
+    Notes
+    -----
+    Definition: each case of the required width, solved for the length.
     """
-    if scaled(1.0) == scaled(2.0):
-        return None
-
-    def fits(factor: float) -> bool:
-        return holds(width_mm, *scaled(factor), capability, closed_gap_mm)
-
-    if not fits(0.0):
-        return None
-    low, high = 0.0, 1.0
-    while fits(high):
-        low, high = high, high * 2.0
-        if high > 1e6:
+    limits: list[tuple[float, float]] = []  # what is left for movement by length, that movement now
+    by_length_open = movement.opening_mm - movement.entered_opening_mm
+    by_length_close = movement.closing_mm - movement.entered_closing_mm
+    if movement.kind == "lap":
+        stretch = capability.total_fraction if capability.convention == TOTAL_SWING else capability.extension_fraction
+        normal = movement.entered_opening_mm + (movement.entered_closing_mm if capability.convention == TOTAL_SWING else 0.0)
+        slide = strain.allowed_shear_mm(width_mm, normal, stretch or 0.0)
+        room = math.sqrt(slide * slide - movement.across_mm**2) if slide >= movement.across_mm else -1.0
+        along = math.sqrt(max(0.0, movement.shear_mm**2 - movement.across_mm**2))
+        limits.append((room - movement.entered_shear_mm, along - movement.entered_shear_mm))
+        fixed = (0.0, movement.entered_closing_mm, movement.across_mm)
+        if not holds(width_mm, fixed[0], fixed[1], fixed[2], capability, closed_gap_mm):
             return None
-    for _ in range(52):
-        middle = 0.5 * (low + high)
-        low, high = (middle, high) if fits(middle) else (low, middle)
-    return low
+    elif capability.convention == TOTAL_SWING:
+        room = strain.allowed_opening_mm(width_mm, movement.shear_mm, capability.total_fraction or 0.0)
+        limits.append((room - movement.entered_opening_mm - movement.entered_closing_mm, by_length_open + by_length_close))
+    else:
+        room = strain.allowed_opening_mm(width_mm, movement.shear_mm, capability.extension_fraction or 0.0)
+        limits.append((room - movement.entered_opening_mm, by_length_open))
+        limits.append(((capability.compression_fraction or 0.0) * width_mm - movement.entered_closing_mm, by_length_close))
+    if closed_gap_mm > 0 and movement.kind != "lap":
+        limits.append((width_mm - closed_gap_mm - movement.entered_closing_mm, by_length_close))
+    if any(left < 0 for left, _ in limits):
+        return None
+    scales = [left / moved for left, moved in limits if moved > 1e-12]
+    return min(scales) if scales else None
 
 
 def width_steps(movement: Movement, capability: Capability, class_label: str, closed_gap_mm: float, found: list[Need]) -> list[Step]:
