@@ -294,7 +294,7 @@ def export(job: dict[str, Any], kind: str) -> tuple[str, str, bytes]:
 def _stem(job: Mapping[str, Any]) -> str:
     """A file name of plain letters from reference or title."""
     for key in ("reference", "title"):
-        value = job.get(key) if isinstance(job, Mapping) else None
+        value = job.get(key)
         if isinstance(value, str):
             words = "".join(ch if ch.isascii() and ch.isalnum() else " " for ch in value).split()
             if words:

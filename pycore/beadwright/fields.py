@@ -582,8 +582,8 @@ def _within(item: Field, value: float, path: str, reads: Reads, label: str, show
     if high is not None and value > high:
         reads.add(Issue(path, "too-large", "error", f"{name} must be {show(high)} or less; this reads {show(value)}.", value, high, unit))
         return False
-    for limit, wrong, word in ((item.soft_min, lambda: value < item.soft_min, "below"), (item.soft_max, lambda: value > item.soft_max, "above")):
-        if limit is not None and wrong():
+    for limit, over, word in ((item.soft_min, -1, "below"), (item.soft_max, 1, "above")):
+        if limit is not None and (value - limit) * over > 0:
             message = f"{name} reads {show(value)}, {word} {show(limit)}. {item.soft_reason} Sure?"
             reads.add(Issue(path, "unusual", "warning", message, value, limit, unit))
     return True

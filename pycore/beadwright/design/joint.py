@@ -9,7 +9,8 @@ from attrs import frozen
 
 from .. import catalogue
 from ..working import Note, Step
-from . import backing, bead, depth, width, window
+from . import backing, depth, width, window
+from .bead import Bead, StrainState, bead_steps, make_bead, strain_steps, strained
 from .elements import Element, read_element
 from .inputs import JointInput, Project, Sealant
 from .movement import Movement, budget
@@ -75,9 +76,9 @@ class Judgement:
     neck_mm: float | None = None
     neck_source: str = ""
     backing: backing.Backing | None = None
-    bead: bead.Bead | None = None
-    opened: bead.StrainState | None = None
-    closed: bead.StrainState | None = None
+    bead: Bead | None = None
+    opened: StrainState | None = None
+    closed: StrainState | None = None
     window: window.Window | None = None
     steps: tuple[Step, ...] = ()
     notes: tuple[Note, ...] = ()
@@ -169,9 +170,9 @@ def _judge(joint: JointInput, project: Project, sealant: Sealant, use: catalogue
     else:
         rod_sag, rod_mm = values["rod_sag"], rod.diameter_mm
     is_concave = values["tooling"] != "flush" and kind != "lap"
-    shape = bead.make_bead(basis, neck, tool_sag_mm=values["tool_sag"], rod_sag_mm=rod_sag, rod_mm=rod_mm, is_concave=is_concave)
-    opened = bead.strained(shape, movement.opening_mm, movement.shear_mm)
-    closed = bead.strained(shape, -movement.closing_mm)
+    shape = make_bead(basis, neck, tool_sag_mm=values["tool_sag"], rod_sag_mm=rod_sag, rod_mm=rod_mm, is_concave=is_concave)
+    opened = strained(shape, movement.opening_mm, movement.shear_mm)
+    closed = strained(shape, -movement.closing_mm)
     sealing = window.find_window(judged, movement, capability, gap)
     verdict, reason = _verdict(widths)
     notes += _notes(joint, project, sealant, movement, widths, rule_depth, shape, is_porous, neck, kind)
@@ -187,9 +188,9 @@ def _judge(joint: JointInput, project: Project, sealant: Sealant, use: catalogue
         rod_step = backing.backing_step(rod, rod_type, basis + spread)
         if rod_step:
             steps.append(rod_step)
-    steps += bead.bead_steps(shape)
+    steps += bead_steps(shape)
     if kind != "lap":
-        steps += bead.strain_steps(shape, opened, closed)
+        steps += strain_steps(shape, opened, closed)
     steps += window.window_steps(judged, movement, capability, gap, sealing)
     return Judgement(
         joint, sealant, use, verdict, reason, elements, capability, movement, widths, rule_depth,
@@ -284,7 +285,7 @@ def _verdict(widths: Widths) -> tuple[str, str]:
 
 
 def _notes(joint: JointInput, project: Project, sealant: Sealant, movement: Movement, widths: Widths, rule_depth: depth.RuleDepth | None,
-           shape: bead.Bead, is_porous: bool, neck: float, kind: str) -> list[Note]:  # fmt: skip
+           shape: Bead, is_porous: bool, neck: float, kind: str) -> list[Note]:  # fmt: skip
     notes: list[Note] = []
     if kind == "butt" and any(side["length_along"] for side in (joint.side_a, joint.side_b)):
         notes.append(Note("warning", "A length that slips along the joint is entered, but the kind is butt: it is not counted. Choose butt with slip to count it."))

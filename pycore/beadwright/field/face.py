@@ -7,7 +7,7 @@ from typing import Any
 
 from attrs import frozen
 
-from ..design import backing, bead, depth, width, window
+from ..design import backing, depth, width, window
 from ..design.inputs import Project
 from ..design.joint import REFERRED, UNKNOWN, Judgement
 from ..physics import humidity, strain

@@ -35,13 +35,10 @@ def _label(path: tuple[str, ...], *jobs: object) -> str:
     """A path in words: the name of each row instead of its id."""
     words = []
     for depth, part in enumerate(path):
-        name = part
-        for job in jobs:
-            row = _walk(job, path[: depth + 1])
-            if isinstance(row, dict) and isinstance(row.get("name") or row.get("label"), str):
-                name = row.get("name") or row.get("label")
-                break
-        words.append(str(name).replace("_", " "))
+        rows = (_walk(job, path[: depth + 1]) for job in jobs)
+        names = (row.get("name") or row.get("label") for row in rows if isinstance(row, dict))
+        name = next((name for name in names if isinstance(name, str)), part)
+        words.append(name.replace("_", " "))
     return " › ".join(words)
 
 
