@@ -167,6 +167,11 @@ export async function writeOn<N extends Name, T>(
   return result;
 }
 
+/** Begin all requests in this turn. A request that is refused on the spot must not leave the others unwatched. */
+export async function together(requests: (() => unknown)[]): Promise<void> {
+  await Promise.all(requests.map(async (request) => request()));
+}
+
 function createStores(db: Handle): void {
   const make = (name: Name, keyPath: string | string[]): void => {
     if (db.objectStoreNames.contains(name)) return;

@@ -1,7 +1,7 @@
 // The door of the store. See types.ts for what goes through it.
 
 import { writeBackup, readBackup } from "./backup";
-import { Database, isQuotaFault } from "./db";
+import { Database, isQuotaFault, together } from "./db";
 import { findFault, jsonCopy } from "./envelope";
 import { askPersistence, gatherFacts } from "./facts";
 import { DATABASE_VERSION, migratePayload, MIGRATIONS, RECORD_SCHEMA } from "./migrations";
@@ -296,12 +296,12 @@ export class Store extends EventTarget {
       const attached = await photos.list(this.#db, id);
       await photos.remove(this.#db, attached.map((photo) => photo.id));
       await this.#db.write(["jobs", "revisions", "drafts", "meta"], "strict", async (tx) => {
-        await Promise.all([
-          tx.objectStore("revisions").delete(IDBKeyRange.bound([id, -Infinity], [id, Infinity])),
-          tx.objectStore("drafts").delete(IDBKeyRange.bound([id, ""], [id, "\uffff"])),
-          tx.objectStore("meta").delete(`history/${id}`),
-          tx.objectStore("meta").delete(`writer/${id}`),
-          tx.objectStore("jobs").delete(id),
+        await together([
+          () => tx.objectStore("revisions").delete(IDBKeyRange.bound([id, -Infinity], [id, Infinity])),
+          () => tx.objectStore("drafts").delete(IDBKeyRange.bound([id, ""], [id, "\uffff"])),
+          () => tx.objectStore("meta").delete(`history/${id}`),
+          () => tx.objectStore("meta").delete(`writer/${id}`),
+          () => tx.objectStore("jobs").delete(id),
         ]);
       });
       this.#emit("jobs", { id, rev: null, isOther: false });
@@ -469,8 +469,9 @@ export class Store extends EventTarget {
     });
     const session = new Session(id, this.#context);
     session.isWriter = isWriter;
-    session.readOnly = reading.readOnly ?? (isWriter ? null : { code: "other-window", reason: TEXT.otherWindow });
-    if (this.#stopped !== null) session.readOnly = { code: "newer-app", reason: this.#stopped };
+    session.readOnly = reading.readOnly;
+    if (this.#stopped !== null) session.readOnly ??= { code: "newer-app", reason: this.#stopped };
+    if (!isWriter) session.readOnly ??= { code: "other-window", reason: TEXT.otherWindow };
     session.begin(reading.pointer, reading.job, reading.draft, reading.history);
     session.skipTo(reading.highestRev);
     this.#sessions.get(id)?.stop();
@@ -479,7 +480,9 @@ export class Store extends EventTarget {
       await setAside(this.#db, id, reading);
       this.#emit("facts", {});
     }
-    return this.#result(session, reading.draft === null ? null : { job: jsonCopy(reading.draft.envelope.payload), at: reading.draft.envelope.saved_at }, reading.recovered);
+    const { draft } = reading;
+    const offer = draft === null ? null : { job: jsonCopy(draft.envelope.payload), at: draft.envelope.saved_at };
+    return this.#result(session, offer, reading.recovered);
   }
 
   #result(session: Session, draft: OpenResult["draft"], recovered: string | null): OpenResult {

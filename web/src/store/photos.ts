@@ -1,7 +1,7 @@
 // Photos as attachments. The picture is made smaller before it is kept; the original only when it is asked for.
 // Bytes are kept as ArrayBuffer beside their record, so that both are in one transaction and can be hashed.
 
-import type { Database } from "./db";
+import { together, type Database } from "./db";
 import { findFault, newId, seal } from "./envelope";
 import { MOST_PHOTO_BYTES } from "./limits";
 import { sha256 } from "./sha256";
@@ -60,10 +60,10 @@ export async function put(db: Database, envelope: Envelope<PhotoMeta>, shown: Ar
   const { id, payload } = envelope;
   await db.write(["photos"], "strict", async (tx) => {
     const store = tx.objectStore("photos");
-    await Promise.all([
-      store.put({ id, part: "meta", job: payload.job, envelope }),
-      store.put({ id, part: "shown", data: shown }),
-      original === null ? undefined : store.put({ id, part: "original", data: original }),
+    await together([
+      () => store.put({ id, part: "meta", job: payload.job, envelope }),
+      () => store.put({ id, part: "shown", data: shown }),
+      () => (original === null ? undefined : store.put({ id, part: "original", data: original })),
     ]);
   });
 }
@@ -134,8 +134,7 @@ export async function read(db: Database, id: string, part: "shown" | "original")
 
 export async function remove(db: Database, ids: string[]): Promise<void> {
   await db.write(["photos"], "strict", async (tx) => {
-    await Promise.all(
-      ids.flatMap((id) => ["meta", "shown", "original"].map((part) => tx.objectStore("photos").delete([id, part]))),
-    );
+    const store = tx.objectStore("photos");
+    await together(ids.flatMap((id) => ["meta", "shown", "original"].map((part) => () => store.delete([id, part]))));
   });
 }

@@ -2,7 +2,7 @@
 // Commits go out in the order they came, each as a revision of its own; those that come while a write is under way
 // go into the next one. Typing goes to a draft. Whatever fails stays here, on screen and in the queue.
 
-import { isQuotaFault, nameOf, type Database, type WriteTx } from "./db";
+import { isQuotaFault, nameOf, together, type Database, type WriteTx } from "./db";
 import { canonicalText, jsonCopy, seal } from "./envelope";
 import { checkedHistory, describe, target, withMove, withStep } from "./history";
 import { revisionsToDrop } from "./retention";
@@ -249,7 +249,9 @@ export class Session {
   /** No more writing from here. What was not saved stays on screen and, where that is safe, is kept as a copy. */
   async demote(readOnly: NonNullable<OpenResult["readOnly"]>, mayKeepCopy: boolean): Promise<void> {
     this.stop();
-    const unsaved = this.hasUnsaved ? this.latest : null;
+    // A draft that is written is safe: whoever writes next is offered it.
+    const isLeft = this.#queue.length > 0 || (this.#typed !== null && this.#draftAt === null);
+    const unsaved = isLeft ? this.latest : null;
     this.isWriter = false;
     this.readOnly = readOnly;
     this.#failure = null;
@@ -348,14 +350,15 @@ export class Session {
       };
       const revisions = tx.objectStore("revisions");
       const meta = tx.objectStore("meta");
-      await Promise.all([
-        ...batch.filter((item) => !drop.has(item.envelope!.rev)).map((item) => revisions.put(item.envelope!)),
-        ...[...drop].map((rev) => revisions.delete([this.id, rev])),
-        tx.objectStore("jobs").put(pointer),
-        meta.put({ key: `history/${this.id}`, value: finalHistory }),
-        this.#keepOffered(tx, newest.job).then(() =>
-          isDraftDone ? tx.objectStore("drafts").delete([this.id, "now"]) : undefined,
-        ),
+      await together([
+        ...batch.filter((item) => !drop.has(item.envelope!.rev)).map((item) => () => revisions.put(item.envelope!)),
+        ...[...drop].map((rev) => () => revisions.delete([this.id, rev])),
+        () => tx.objectStore("jobs").put(pointer),
+        () => meta.put({ key: `history/${this.id}`, value: finalHistory }),
+        async () => {
+          await this.#keepOffered(tx, newest.job);
+          if (isDraftDone) await tx.objectStore("drafts").delete([this.id, "now"]);
+        },
       ]);
       return { pointer, history: finalHistory, isRebuilt };
     });
@@ -367,9 +370,9 @@ export class Session {
     const meta = write.objectStore("meta");
     const { schema } = this.#ctx.stamp();
     const [stored, writer, pointer] = await Promise.all([
-      meta.get("schema"),
-      meta.get(`writer/${this.id}`),
-      write.objectStore("jobs").get(this.id),
+      (async () => meta.get("schema"))(),
+      (async () => meta.get(`writer/${this.id}`))(),
+      (async () => write.objectStore("jobs").get(this.id))(),
     ]);
     if (typeof stored?.value === "number" && stored.value > schema) throw new StoreError("newer-app", TEXT.newerApp);
     if (stored === undefined) await meta.put({ key: "schema", value: schema });
@@ -386,7 +389,7 @@ export class Session {
     const drafts = (tx as WriteTx<"drafts">).objectStore("drafts");
     await drafts.put({ ...offered, slot: `kept ${offered.envelope.saved_at}` });
     const kept = await drafts.getAllKeys(IDBKeyRange.bound([this.id, "kept "], [this.id, "kept \uffff"]));
-    await Promise.all(kept.slice(0, Math.max(0, kept.length - MOST_KEPT_DRAFTS)).map((key) => drafts.delete(key)));
+    await together(kept.slice(0, Math.max(0, kept.length - MOST_KEPT_DRAFTS)).map((key) => () => drafts.delete(key)));
   }
 
   async #keepCopy(job: Job): Promise<void> {
