@@ -53,7 +53,7 @@ def sections(text: str) -> dict[str, str]:
     text = inspect.cleandoc(text)
     marks = list(SECTION.finditer(text))
     found = {"Summary": text[: marks[0].start()] if marks else text}
-    for mark, following in zip(marks, [*marks[1:], None]):
+    for mark, following in zip(marks, [*marks[1:], None], strict=False):
         found[mark["title"]] = text[mark.end() : following.start() if following else len(text)].strip("\n")
     return found
 
@@ -63,7 +63,7 @@ def entries(text: str) -> dict[str, str]:
     marks = list(ENTRY.finditer(text))
     return {
         mark["name"].lstrip("*"): text[mark.end() : following.start() if following else len(text)].strip()
-        for mark, following in zip(marks, [*marks[1:], None])
+        for mark, following in zip(marks, [*marks[1:], None], strict=False)
     }
 
 

@@ -7,10 +7,10 @@ from printed import DERIVED, MEMORY, Case, locator
 from beadwright.physics import strain, thermal
 
 SPACINGS_M = (2.0, 3.5, 5.0, 6.5, 8.0)
-CASES = [Case(f"least width at {m} m", {"length_mm": 1000.0 * m}, w, 5.0, MEMORY) for m, w in zip(SPACINGS_M, (10, 15, 20, 25, 30))]
+CASES = [Case(f"least width at {m} m", {"length_mm": 1000.0 * m}, w, 5.0, MEMORY) for m, w in zip(SPACINGS_M, (10, 15, 20, 25, 30), strict=True)]
 CASES += [
     Case(f"plausible width at {m} m", {"length_mm": 1000.0 * m}, w, 0.1, DERIVED)
-    for m, w in zip(SPACINGS_M, (7.7, 13.4, 19.2, 25.0, 30.7))
+    for m, w in zip(SPACINGS_M, (7.7, 13.4, 19.2, 25.0, 30.7), strict=True)
 ]
 
 

@@ -15,7 +15,7 @@ TABLE = {
 CASES = [
     Case(f"D/W {ratio:g}, extension {extension:.0%}", {"ratio": ratio, "extension": extension}, expected, 0.1, DERIVED)
     for ratio, row in TABLE.items()
-    for extension, expected in zip(EXTENSIONS, row)
+    for extension, expected in zip(EXTENSIONS, row, strict=True)
 ]
 NECKS = [
     Case("neck at +100 % is D/4", {"change_mm": 16.0}, 3.0, 0.001, DERIVED),

@@ -438,8 +438,8 @@ def neck_after_mm(width_mm: float, depth_mm: float, change_mm: float) -> float:
     3.0
     """
     _require_model_range(width_mm, depth_mm, change_mm)
-    # D (1 - 1.5 d / c) = D (W - d / 2) / (W + d): exactly 0 where the faces meet
-    return depth_mm * (width_mm - 0.5 * change_mm) / (width_mm + change_mm)
+    # D (1 - 1.5 d / c) = D (W - d / 2) / (W + d): exactly D at rest and 0 where the faces meet
+    return depth_mm * ((width_mm - 0.5 * change_mm) / (width_mm + change_mm))
 
 
 def face_strain(width_mm: float, depth_mm: float, change_mm: float) -> float:
