@@ -12,7 +12,7 @@ TOL0 = {"fabrication_tolerance": "0 mm", "erection_tolerance": "0 mm", "spacing_
 
 def make_job(joint: dict[str, Any] | None = None, *, site: dict[str, Any] | None = None, sealant: dict[str, Any] | None = None, units: str = "metric") -> dict[str, Any]:
     """One butt joint between two direct-temperature sides; parts can be overridden."""
-    side = {"substrate": "concrete-gravel", "length": "6 m", "fixity": "middle", "expansion": "10 e-6/K", "summer_surface": "50 degC", "winter_surface": "-20 degC",
+    side = {"substrate": "concrete-precast", "length": "6 m", "fixity": "middle", "expansion": "10 e-6/K", "summer_surface": "50 degC", "winter_surface": "-20 degC",
             "moisture_reversible": "0 %", "moisture_irreversible": "0 %"}  # fmt: skip
     base: dict[str, Any] = {
         "id": "j", "name": "Joint", "kind": "butt", "use": "weather", "sealant": "s", "side_a": dict(side), "side_b": dict(side), "causes": [], **TOL0,

@@ -45,6 +45,7 @@ class JointInput:
     face: Mapping[str, Any]
     has_face: bool
     has_errors: bool
+    typed_width: str
     reads: Reads = field(repr=False)
 
 
@@ -219,7 +220,11 @@ def read_joint(name: str, path: str, row: Mapping[str, Any], project: Project) -
     has_errors = any(issue.severity == "error" for issue in reads.issues)
     face = _read_face(row.get("face"), f"{path}/face", reads, tables)
     has_face = any(face[key] is not None for key in ("width", "width_least", "width_most", "surface", "air", "humidity"))
-    return JointInput(name, path, values, sides[0], sides[1], tuple(causes), face, has_face, has_errors, reads)
+    typed = row.get("width")
+    return JointInput(
+        name, path, values, sides[0], sides[1], tuple(causes), face, has_face, has_errors,
+        typed.strip() if isinstance(typed, str) else "", reads,
+    )  # fmt: skip
 
 
 def _read_face(raw: object, path: str, reads: Reads, tables: Tables) -> dict[str, Any]:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from attrs import frozen
+from attrs import evolve, frozen
 
 from .. import catalogue
 from ..working import Note, Step
@@ -164,7 +164,11 @@ def _judge(joint: JointInput, project: Project, sealant: Sealant, use: catalogue
     rod_type = catalogue.rod_types()[values["rod"] or "closed-cell"]
     if values["width"] is not None and values["width_is"] == "built":
         spread = 0.0
-    rod = backing.choose(rod_type, site["rod_series"] or "metric", max(basis - spread, 0.25 * basis), basis + spread)
+    series = site["rod_series"] or "metric"
+    # The section shows the rod of the width itself; the bands tell what a built width takes.
+    rod = backing.choose(rod_type, series, basis, basis)
+    if spread and rod.diameter_mm is not None:
+        rod = evolve(rod, bands=backing.size_bands(rod_type, series, max(basis - spread, 0.25 * basis), basis + spread))
     if kind == "lap":
         rod_sag, rod_mm = values["rod_sag"] or 0.0, None
     else:
@@ -185,7 +189,7 @@ def _judge(joint: JointInput, project: Project, sealant: Sealant, use: catalogue
     elif rule_depth is not None and values["neck"] is None:
         steps.append(depth.depth_step(rule_depth, basis, is_porous=is_porous))
     if kind != "lap":
-        rod_step = backing.backing_step(rod, rod_type, basis + spread)
+        rod_step = backing.backing_step(rod, rod_type, basis)
         if rod_step:
             steps.append(rod_step)
     steps += bead_steps(shape)

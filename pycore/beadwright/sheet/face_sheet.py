@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
+from ..design.backing import Backing
 from ..design.joint import Judgement
 from ..field.face import SEAL, STOP, WAIT, Check, FaceAnswer
 from ..working import Value
@@ -91,11 +92,11 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
         if answer.window.is_empty or answer.window.from_c is None or answer.window.to_c is None:
             add("window", "At which temperature?", "At none", answer.window.advice, "bad")
         else:
-            add("window", "At which temperature?", f"{writing.temperature(answer.window.from_c, system)} to {writing.temperature(answer.window.to_c, system)}", "Of the elements, for the narrowest width read.")
+            add("window", "At which temperature?", f"{writing.temperature_up(answer.window.from_c, system)} to {writing.temperature_down(answer.window.to_c, system)}", "Of the elements, for the narrowest width read.")
     if answer.reference_width_mm is not None and answer.reference_c is not None:
         add("reference", f"Width at {writing.temperature(answer.reference_c, system)}?", writing.length(round(answer.reference_width_mm, 1), system), "To compare with the drawing and with other days.")
     if answer.rod is not None:
-        add("rod", "Which rod?", f"{answer.rod.size_label} {answer.rod.label.lower()}" if answer.rod.diameter_mm else answer.rod.size_label, answer.rod.advice, "plain" if answer.rod.fits else "warn")
+        add("rod", "Which rod?", f"{answer.rod.size_label} {answer.rod.label.lower()}" if answer.rod.diameter_mm else answer.rod.size_label, _rod_detail(answer.rod, system), "plain" if answer.rod.fits else "warn")
     if answer.depth is not None:
         add("depth", "Set which depth?", writing.length(answer.depth.target_mm, system), f"At mid-width, {writing.length(answer.depth.least_mm, system)} to {writing.length(answer.depth.most_mm, system)} allowed by {answer.depth.rule.label}.")
     if answer.dew_point_c is not None:
@@ -103,3 +104,10 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
     if answer.green_fraction is not None:
         add("green", "Movement while green?", writing.percent(answer.green_fraction), "Of the width, over the swing entered. A rough guide: how far a green bead may move depends on the sealant.")
     return bands
+
+
+def _rod_detail(rod: Backing, system: str) -> str:
+    """The size at each width where one cannot serve the whole range."""
+    if rod.fits or len(rod.bands) < 2:
+        return rod.advice
+    return f"{rod.advice} {', '.join(f'{band.size_label} up to {writing.down(band.width_to_mm, system)}' for band in rod.bands)}."

@@ -73,7 +73,7 @@ def verdict_text(judged: Judgement, system: str) -> str:
     widths = judged.widths
     if widths is None or judged.sealant is None:
         return judged.reason
-    need, have = writing.up(widths.required_mm, system), writing.length(widths.judged_mm, system)
+    need, have = writing.up(widths.required_mm, system), writing.down(widths.judged_mm, system)
     governs = widths.governed_by.label
     if judged.reason == "practical-most":
         limit = writing.length(widths.practical_most_mm, system)
@@ -88,8 +88,30 @@ def verdict_text(judged: Judgement, system: str) -> str:
     if judged.verdict == BEYOND:
         if widths.judged_mm <= 0:
             return "The tolerance eats the whole width: nothing is left that can be relied on."
-        return f"Needs {need}, has {have}{tail}: {used} of {judged.sealant.class_label} would be used; {governs} governs."
+        return f"Needs {need}, has {have}{tail}: {used} of {judged.sealant.class_label} would be used; {governs} governs.{_way_out(judged, system)}"
     return f"Needs {need}, has {have}{tail}: {used} of {judged.sealant.class_label} is used; {governs} governs."
+
+
+def _way_out(judged: Judgement, system: str) -> str:
+    """What sealing at the right temperature alone would mend, where it would."""
+    window = judged.window
+    if window is None or window.is_empty or judged.capability is None or judged.capability.convention == TOTAL_SWING:
+        return ""
+    return f" It would hold if sealed {_window_words(judged, system)[0].lower()}{_window_words(judged, system)[1:]}."
+
+
+def _window_words(judged: Judgement, system: str) -> str:
+    """The sealing window in words, each end rounded inwards."""
+    window = judged.window
+    assert window is not None and window.from_c is not None and window.to_c is not None
+    low, high = writing.temperature_up(window.from_c, system), writing.temperature_down(window.to_c, system)
+    if window.low_limited_by == window.high_limited_by == "element":
+        return "At any temperature"
+    if window.low_limited_by == "element":
+        return f"Not above {high}"
+    if window.high_limited_by == "element":
+        return f"Not below {low}"
+    return f"From {low} to {high}"
 
 
 def _headline(judged: Judgement, system: str) -> dict[str, str | None]:
@@ -99,7 +121,8 @@ def _headline(judged: Judgement, system: str) -> dict[str, str | None]:
     shown = widths.present_mm if widths.present_mm is not None else widths.design_mm
     lap = judged.movement is not None and judged.movement.kind == "lap"
     rod = judged.backing.size_label if judged.backing and not lap else None
-    return {"width": writing.length(shown, system), "depth": writing.length(judged.neck_mm, system), "rod": rod}
+    typed = judged.joint.typed_width if widths.present_mm is not None else ""
+    return {"width": typed or writing.length(shown, system), "depth": writing.length(judged.neck_mm, system), "rod": rod}
 
 
 def _figures(judged: Judgement) -> dict[str, Any]:
@@ -137,6 +160,7 @@ def _figures(judged: Judgement) -> dict[str, Any]:
         "backing": None if rod is None else {
             "type": rod.type_id, "diameter_mm": rod.diameter_mm, "label": rod.size_label, "compression_least_fraction": rod.compression_least_fraction,
             "compression_most_fraction": rod.compression_most_fraction, "fits": rod.fits,
+            "bands": [{"diameter_mm": band.diameter_mm, "width_to_mm": band.width_to_mm} for band in rod.bands],
         },
         "section": {"area_mm2": bead.area_mm2, "rectangle_mm2": bead.rectangle_mm2, "width_mm": bead.width_mm, "tool_sag_mm": bead.tool_sag_mm, "rod_sag_mm": bead.rod_sag_mm},
         "strain": {
@@ -208,7 +232,7 @@ def _movement_band(judged: Judgement, system: str) -> Band:
 
 def _tenth(value_mm: float) -> float:
     """A movement for an answer: to a tenth of a millimetre, upwards."""
-    return writing._ceil(value_mm, 10)
+    return writing.ceil_to(value_mm, 10)
 
 
 def _depth_band(judged: Judgement, system: str, *, lap: bool) -> Band:
@@ -235,20 +259,28 @@ def _rod_band(judged: Judgement, system: str) -> Band:
     assert rod.compression_least_fraction is not None and rod.compression_most_fraction is not None
     low, high = writing.percent(rod.compression_least_fraction), writing.percent(rod.compression_most_fraction)
     squeeze = f"squeezed {low}" if low == high else f"squeezed {low} at the widest to {high} at the narrowest"
-    return _band("rod", "What goes behind it?", f"{rod.size_label} {rod.label.lower()}", f"{squeeze.capitalize()}. {rod.advice}".strip(), "plain" if rod.fits else "warn")
+    detail = f"{squeeze.capitalize()}. {rod.advice}".strip()
+    if len(rod.bands) > 1:
+        sizes = ", ".join(f"{band.size_label} up to {writing.down(band.width_to_mm, system)}" for band in rod.bands)
+        detail += f" By the width found: {sizes}."
+    return _band("rod", "What goes behind it?", f"{rod.size_label} {rod.label.lower()}", detail, "plain" if rod.fits else "warn")
 
 
 def _window_band(judged: Judgement, system: str) -> Band:
     window, movement, widths = judged.window, judged.movement, judged.widths
     assert window is not None and movement is not None and widths is not None
-    basis = writing.length(widths.judged_mm, system)
+    basis = writing.down(widths.judged_mm, system)
     if window.is_empty or window.from_c is None or window.to_c is None:
         return _band("window", "When may it be sealed?", "At no temperature", f"{window.advice} Judged at {basis}.", "bad")
+    words = _window_words(judged, system)
     if window.low_limited_by == window.high_limited_by == "element":
-        return _band("window", "When may it be sealed?", "At any temperature", f"As far as movement goes, at {basis}; the sealant and the weather set their own limits.", "ok")
-    low = writing.temperature(window.from_c, system) if window.low_limited_by != "element" else "any cold"
-    high = writing.temperature(window.to_c, system) if window.high_limited_by != "element" else "any heat"
-    return _band("window", "When may it be sealed?", f"{low} to {high}", f"Temperature of the elements, not of the air, at {basis}. Colder, and summer closes it too far; warmer, and winter opens it too far.")
+        return _band("window", "When may it be sealed?", words, f"As far as movement goes, at {basis}; the sealant and the weather set their own limits.", "ok")
+    why = []
+    if window.low_limited_by != "element":
+        why.append("Colder, and summer closes it too far.")
+    if window.high_limited_by != "element":
+        why.append("Warmer, and winter opens it too far.")
+    return _band("window", "When may it be sealed?", words, f"Temperature of the elements, not of the air, at {basis}. {' '.join(why)}")
 
 
 def _class_band(judged: Judgement) -> Band:

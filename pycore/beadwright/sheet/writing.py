@@ -70,13 +70,19 @@ def length(value_mm: float | None, system: str) -> str:
 
 
 def up(value_mm: float, system: str) -> str:
-    """An unrounded length that must not look smaller than it is: one decimal, or 1/1000 in, rounded up."""
+    """A length that must not look smaller than it is: to a tenth of a millimetre or 1/1000 in, upwards."""
+    return f"{plain(ceil_to(value_mm, 10), 1)} mm" if system == METRIC else f"{plain(ceil_to(value_mm / 25.4, 1000), 3)} in"
+
+
+def down(value_mm: float, system: str) -> str:
+    """A length that must not look larger than it is; an inch fraction stays a fraction."""
     if system == METRIC:
-        return f"{plain(_ceil(value_mm, 10), 1)} mm"
-    return f"{plain(_ceil(value_mm / 25.4, 1000), 3)} in"
+        return f"{plain(-ceil_to(-value_mm, 10), 1)} mm"
+    return quantity.show_inches(value_mm, 32, exact_only=True) or f"{plain(-ceil_to(-value_mm / 25.4, 1000), 3)} in"
 
 
-def _ceil(value: float, per_unit: int) -> float:
+def ceil_to(value: float, per_unit: int) -> float:
+    """The next 1/per_unit at or above a value; float noise does not add a step."""
     return math.ceil(value * per_unit - 1e-6) / per_unit
 
 
@@ -88,6 +94,22 @@ def span(value_mm: float, system: str) -> str:
 def temperature(value_c: float, system: str) -> str:
     """A temperature as an answer, to a whole degree where it is one."""
     return quantity.show(value_c, "temperature", "degF" if system == INCH else "degC", 1)
+
+
+def temperature_up(value_c: float, system: str) -> str:
+    """The lower end of a range of temperature, rounded inwards to a tenth."""
+    return _inward(value_c, system, up=True)
+
+
+def temperature_down(value_c: float, system: str) -> str:
+    """The upper end of a range of temperature, rounded inwards to a tenth."""
+    return _inward(value_c, system, up=False)
+
+
+def _inward(value_c: float, system: str, *, up: bool) -> str:
+    number = value_c * 1.8 + 32.0 if system == INCH else value_c
+    rounded = ceil_to(number, 10) if up else -ceil_to(-number, 10)
+    return f"{plain(rounded, 1)} {'°F' if system == INCH else '°C'}"
 
 
 def difference(value_k: float, system: str) -> str:
