@@ -131,7 +131,8 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
     job : object
         A decoded job file; anything else yields issues, not an exception.
     only : iterable of str, optional
-        Ids of the joints to give in full; the others come in short form. None: all in full.
+        Ids of the joints to give in full; the others come in short form (verdict and headline,
+        no figures and no readings). None: all in full.
 
     Returns
     -------
@@ -146,11 +147,13 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
     by_joint: dict[str, tuple[catalogue.Caution, ...]] = {}
     issues, readings = list(project.reads.issues), dict(project.reads.readings)
     for joint_id, path, row in joint_rows(job, rows):
-        one = _answer(shared, joint_id, path, _text(row), full=wanted is None or joint_id in wanted)
+        full = wanted is None or joint_id in wanted
+        one = _answer(shared, joint_id, path, _text(row), full=full)
         answers[joint_id] = one.answer
         by_joint[joint_id] = one.cautions
         issues += one.issues
-        readings.update(one.readings)
+        if full:
+            readings.update(one.readings)
     return {
         "core": _core(),
         "issues": [issue.as_dict() for issue in [*rows.issues, *issues]],

@@ -30,7 +30,7 @@ Band = dict[str, str]
 
 
 def joint_dict(judged: Judgement, face: FaceAnswer | None, system: str, cautions: Sequence[str], *, full: bool) -> dict[str, Any]:
-    """The answer for one joint; the short form leaves out bands, tables, working and drawing."""
+    """The answer for one joint; the short form holds what a list of joints shows, no more."""
     joint = judged.joint
     answer: dict[str, Any] = {
         "id": joint.id,
@@ -45,8 +45,8 @@ def joint_dict(judged: Judgement, face: FaceAnswer | None, system: str, cautions
         "tone": _TONES[judged.verdict],
         "headline": _headline(judged, system),
     }
-    answer |= _figures(judged)
     if full:
+        answer |= _figures(judged)
         answer |= {
             "answers": _bands(judged, system),
             "tables": _tables(judged, system),
