@@ -1,0 +1,104 @@
+// The one state object. Pages are drawn from it; actions make a new one.
+
+import type { CoreStatus } from "../core/client";
+import type { HistoryState, JobSummary, QuarantineInfo, RevisionInfo, SaveState, StoreFacts } from "../store/types";
+import type { Change, Conflict, Evaluation, Forms, Frames, Issue, Row } from "./contract";
+import type { OfflineState } from "./ports";
+import type { Route } from "./routes";
+
+export type Theme = "paper" | "sun" | "dark";
+
+export interface OpenJob {
+  id: string;
+  job: Row;
+  /** The last whole that was committed; typing runs ahead of it. */
+  committed: Row;
+  /** Counts every change, so that an answer can be matched to what it answers. */
+  version: number;
+  draft: { job: Row; at: string } | null;
+  recovered: string | null;
+  readOnly: { reason: string; code: string } | null;
+  /** Looked at without being kept: a newer file, or a sample in a browser that keeps nothing. */
+  isLoose: boolean;
+}
+
+/** A field in which typing is not yet committed; the unit is the chip beside it. */
+export interface Pending {
+  pointer: string;
+  unit: string | null;
+}
+
+export interface Result {
+  jobId: string;
+  version: number;
+  evaluation: Evaluation;
+}
+
+export interface FrameSet {
+  jointId: string;
+  version: number;
+  data: Frames;
+}
+
+/** A file that has been read and waits for a decision. */
+export interface Incoming {
+  fileName: string;
+  raw: Uint8Array;
+  job: Row | null;
+  issues: Issue[];
+  readOnly: boolean;
+  mine: Row | null;
+  changes: Change[];
+  merged: { job: Row; conflicts: Conflict[]; choices: Record<string, "mine" | "theirs"> } | null;
+}
+
+export interface Notice {
+  text: string;
+  tone: "plain" | "bad";
+  /** An undo offered with the notice. */
+  canUndo?: boolean;
+}
+
+export interface Demo {
+  name: string;
+  title: string;
+}
+
+export interface State {
+  route: Route;
+  theme: Theme;
+  core: CoreStatus;
+  /** Why the last answer failed, for people; null when it did not. */
+  coreFault: string | null;
+  forms: Forms | null;
+  formsFault: string | null;
+  jobs: JobSummary[] | null;
+  demos: Demo[];
+  bin: JobSummary[] | null;
+  quarantine: QuarantineInfo[] | null;
+  revisions: RevisionInfo[] | null;
+  open: OpenJob | null;
+  openFault: string | null;
+  pending: Pending | null;
+  history: HistoryState;
+  result: Result | null;
+  isStale: boolean;
+  frames: FrameSet | null;
+  /** Frame shown by the scrubber; null means where the core starts it. */
+  frameIndex: number | null;
+  incoming: Incoming | null;
+  save: SaveState;
+  offline: OfflineState;
+  facts: StoreFacts | null;
+  /** Unit chips that people chose, by pointer. */
+  chips: Readonly<Record<string, string>>;
+  /** Disclosures that are open, by name. */
+  opened: ReadonlySet<string>;
+  isArranging: boolean;
+  /** What waits for a second tap, such as removing a job. */
+  asking: string | null;
+  notice: Notice | null;
+  spoken: string;
+}
+
+export const NO_HISTORY: HistoryState = { canUndo: false, canRedo: false, undoLabel: null, redoLabel: null, depth: 0 };

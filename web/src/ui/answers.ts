@@ -1,0 +1,154 @@
+// What the core answered, set out as on a calculation pad: the question in the margin, the answer beside it.
+
+import { html, nothing, type TemplateResult } from "lit";
+import type { App } from "../app/app";
+import type { Answer, AnswerTable, Caution, Issue, JointAnswer, Step } from "../app/contract";
+import { href } from "../app/routes";
+import { disclosure } from "./form";
+import { mark, toneOf } from "./marks";
+
+export interface VerdictParts {
+  verdict: string;
+  word: string;
+  text: string;
+}
+
+export function verdict(parts: VerdictParts, isStale: boolean): TemplateResult {
+  const tone = toneOf(parts.verdict);
+  return html`<div class="verdict tone-${tone}" data-testid="verdict" data-verdict=${parts.verdict}>
+    <p class="verdict-word"><span>${parts.word}</span>${mark(parts.verdict)}</p>
+    ${parts.text ? html`<p class="verdict-text">${parts.text}</p>` : nothing} ${isStale ? staleNote() : nothing}
+  </div>`;
+}
+
+export function verdictOf(joint: JointAnswer): VerdictParts {
+  return { verdict: joint.verdict, word: joint.verdict_word, text: joint.verdict_text ?? "" };
+}
+
+/** A verdict in a row of the schedule. */
+export function smallVerdict(name: string, word: string): TemplateResult {
+  return html`<span class="small-verdict tone-${toneOf(name)}" data-verdict=${name}><span>${word}</span>${mark(name)}</span>`;
+}
+
+export function staleNote(): TemplateResult {
+  return html`<p class="stale" data-testid="stale">From before your last change</p>`;
+}
+
+export function bands(answers: Answer[]): TemplateResult {
+  return html`<div class="bands">
+    ${answers.map(
+      (item) => html`<div class="band tone-${item.tone ?? "plain"}" data-testid="answer-${item.key}">
+        <h3 class="band-question">${item.question}</h3>
+        <div class="band-answer">
+          <p class="figure"><span>${item.answer}</span>${item.tone && item.tone !== "plain" ? mark(item.tone) : nothing}</p>
+          ${item.detail ? html`<p class="detail">${item.detail}</p>` : nothing}
+        </div>
+      </div>`,
+    )}
+  </div>`;
+}
+
+const ROW_WORDS = { chosen: "in force", bad: "not enough" } as const;
+
+export function table(data: AnswerTable): TemplateResult {
+  const hasMarks = data.rows.some((row) => row.mark);
+  return html`<div class="table-wrap" data-testid="table-${data.key}">
+    <table>
+      <caption>${data.title}</caption>
+      <thead>
+        <tr>
+          ${data.columns.map((column) => html`<th scope="col" class=${column.align === "right" ? "right" : ""}>${column.label}</th>`)}
+          ${hasMarks ? html`<th scope="col"><span class="hidden-word">Mark</span></th>` : nothing}
+        </tr>
+      </thead>
+      <tbody>
+        ${data.rows.map(
+          (row) => html`<tr class=${row.mark ? `is-${row.mark}` : ""}>
+            ${row.cells.map((cell, at) => cellOf(cell, at, data.columns[at]?.align))}
+            ${hasMarks ? html`<td class="row-mark">${row.mark ? html`${ROW_WORDS[row.mark] ?? row.mark}` : nothing}</td>` : nothing}
+          </tr>`,
+        )}
+      </tbody>
+    </table>
+    ${data.note ? html`<p class="detail">${data.note}</p>` : nothing}
+  </div>`;
+}
+
+function cellOf(cell: string, at: number, align: string | undefined): TemplateResult {
+  const tone = align === "right" ? "right" : "";
+  return at === 0 ? html`<th scope="row" class=${tone}>${cell}</th>` : html`<td class=${tone}>${cell}</td>`;
+}
+
+/** The working, as three columns of a calculation sheet: reference, calculation, result. */
+export function working(steps: Step[]): TemplateResult {
+  return html`<ol class="working">
+    ${steps.map(
+      (step) => html`<li class="step" data-testid="step-${step.key}">
+        <p class="step-source">${step.source ?? ""}${step.status && step.status !== "read" ? html` <span class="status">${step.status}</span>` : nothing}</p>
+        <div class="step-lines">
+          <p class="step-title">${step.title}</p>
+          ${step.formula ? html`<p class="step-formula">${step.formula}</p>` : nothing}
+          ${step.numbers ? html`<p class="step-numbers">${step.numbers}</p>` : nothing}
+        </div>
+        <p class="step-result">${step.symbol ? html`<i class="symbol">${step.symbol}</i> = ` : nothing}<b>${step.result}</b></p>
+      </li>`,
+    )}
+  </ol>`;
+}
+
+export function workingPart(app: App, steps: Step[], name: string): TemplateResult | typeof nothing {
+  if (steps.length === 0) return nothing;
+  return html`<section class="part" aria-label="Working">
+    ${disclosure(app, name, html`Working, ${steps.length} steps`, () => working(steps), false, true)}
+  </section>`;
+}
+
+const NOTE_WORDS: Record<string, string> = { error: "Fix", warning: "Check", note: "Note", stop: "Stop" };
+
+export function notes(items: { severity: string; text: string }[]): TemplateResult | typeof nothing {
+  if (items.length === 0) return nothing;
+  return html`<ul class="notes" data-testid="notes">
+    ${items.map((item) => html`<li class="note is-${item.severity}"><b>${NOTE_WORDS[item.severity] ?? "Note"}:</b> ${item.text}</li>`)}
+  </ul>`;
+}
+
+const CAUTION_WORDS = { stop: "Stop", warning: "Take care", note: "Note" } as const;
+
+export function cautions(app: App, items: Caution[], withJoints: boolean): TemplateResult | typeof nothing {
+  if (items.length === 0) return nothing;
+  return html`<ul class="cautions" data-testid="cautions">
+    ${items.map(
+      (item) => html`<li class="caution is-${item.severity}">
+        <p class="caution-word">${CAUTION_WORDS[item.severity] ?? "Note"}</p>
+        <div>
+          <h3 class="caution-title">${item.title}</h3>
+          <p>${item.text}</p>
+          ${item.source ? html`<p class="source">${item.source}</p>` : nothing} ${withJoints ? jointsOf(app, item) : nothing}
+        </div>
+      </li>`,
+    )}
+  </ul>`;
+}
+
+function jointsOf(app: App, item: Caution): TemplateResult | typeof nothing {
+  const joints = app.state.result?.evaluation.joints ?? {};
+  const named = (item.joints ?? []).filter((id) => joints[id] !== undefined);
+  if (named.length === 0) return nothing;
+  return html`<p class="source">
+    Joints:
+    ${named.map((id, at) => html`${at > 0 ? ", " : ""}<a href=${href({ page: "joint", job: app.open.id, joint: id })}>${joints[id]!.name}</a>`)}
+  </p>`;
+}
+
+/** How far the core is, in place of answers that are not there yet. */
+export function waiting(app: App): TemplateResult {
+  const { core, coreFault } = app.state;
+  if (coreFault !== null) return html`<p class="waiting is-bad" data-testid="core-fault"><b>Stopped:</b> ${coreFault}</p>`;
+  if (core.phase === "failed") return html`<p class="waiting is-bad"><b>Stopped:</b> ${core.text}</p>`;
+  if (core.phase === "ready") return html`<p class="waiting">Working…</p>`;
+  return html`<p class="waiting">Working starts when ready. ${core.text}</p>`;
+}
+
+export function severityCount(issues: Issue[], severity: Issue["severity"]): number {
+  return issues.filter((issue) => issue.severity === severity).length;
+}
