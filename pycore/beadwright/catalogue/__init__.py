@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import json
 from collections.abc import Callable, Mapping
-from functools import lru_cache
+from functools import cache, lru_cache
 from importlib import resources
 from types import MappingProxyType
 from typing import Any, TypeVar
@@ -106,7 +106,7 @@ EDITIONS: Mapping[str, str] = MappingProxyType({
     "metals": "2026-1",
 })  # fmt: skip
 
-R = TypeVar("R", Row, Caution)
+R = TypeVar("R", bound=Row | Caution)
 
 
 def table_ids() -> tuple[str, ...]:
@@ -114,7 +114,7 @@ def table_ids() -> tuple[str, ...]:
     return tuple(f"{name}@{edition}" for name, edition in EDITIONS.items())
 
 
-@lru_cache(maxsize=None)
+@cache
 def table(name: str) -> Table:
     """A data file as it stands, by table name (KeyError for an unknown one)."""
     file_name = f"{name}-{EDITIONS[name]}.json"
@@ -129,7 +129,7 @@ def _read(name: str, make: Callable[[dict[str, Any]], R]) -> Mapping[str, R]:
     found: dict[str, R] = {}
     whole = table(name)
     for raw in whole.rows:
-        columns = dict(raw)
+        columns: dict[str, Any] = dict(raw)
         if whole.column_sources:
             columns["sources"] = {**whole.column_sources, **columns.get("sources", {})}
         row = make(columns)
@@ -139,13 +139,13 @@ def _read(name: str, make: Callable[[dict[str, Any]], R]) -> Mapping[str, R]:
     return MappingProxyType(found)
 
 
-@lru_cache(maxsize=None)
+@cache
 def finishes() -> Mapping[str, Finish]:
     """Colours and finishes with their solar absorption."""
     return _read("finishes", lambda raw: Finish(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def substrates() -> Mapping[str, Substrate]:
     """Building materials, grouped as the file orders them."""
     known = finishes()
@@ -158,13 +158,13 @@ def substrates() -> Mapping[str, Substrate]:
     return _read("substrates", make)
 
 
-@lru_cache(maxsize=None)
+@cache
 def families() -> Mapping[str, Family]:
     """Sealant families with general ranges."""
     return _read("families", lambda raw: Family(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def classes() -> Mapping[str, MovementClass]:
     """Movement classes of ASTM C920 and ISO 11600."""
     return _read("classes", lambda raw: MovementClass(**raw))
@@ -180,7 +180,7 @@ def _band(raw: Mapping[str, Any]) -> Band:
     return Band(raw["faces"], raw["over_mm"], raw["to_mm"], least, target, most)
 
 
-@lru_cache(maxsize=None)
+@cache
 def depth_rules() -> Mapping[str, DepthRule]:
     """Published rule sets for the depth of a bead; they disagree."""
     return _read(
@@ -189,13 +189,13 @@ def depth_rules() -> Mapping[str, DepthRule]:
     )
 
 
-@lru_cache(maxsize=None)
+@cache
 def rod_types() -> Mapping[str, RodType]:
     """Kinds of backing."""
     return _read("rod-types", lambda raw: RodType(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def rod_series_table() -> Mapping[str, RodSeries]:
     """Series of stock rod sizes, `metric` and `inch`."""
     return _read(
@@ -209,55 +209,55 @@ def rod_series(name: str) -> tuple[RodSize, ...]:
     return rod_series_table()[name].sizes
 
 
-@lru_cache(maxsize=None)
+@cache
 def heat_constants() -> Mapping[str, HeatConstant]:
     """Heat constants by mass and sun: `low-open`, `low-reflected`, `high-open`, `high-reflected`."""
     return _read("heat-constants", lambda raw: HeatConstant(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def regions() -> Mapping[str, Region]:
     """Regions with the standards named there."""
     return _read("regions", lambda raw: Region(**{**raw, "standards": tuple(raw["standards"])}))
 
 
-@lru_cache(maxsize=None)
+@cache
 def uses() -> Mapping[str, Use]:
     """What a joint may be for."""
     return _read("uses", lambda raw: Use(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def typical_tolerances() -> Mapping[str, Tolerance]:
     """Deviations met on site and the precision of instruments."""
     return _read("tolerances", lambda raw: Tolerance(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def sealing_limits() -> Mapping[str, Limit]:
     """Limits on weather and surfaces when sealing."""
     return _read("sealing-limits", lambda raw: Limit(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def green_movement() -> Mapping[str, Limit]:
     """How far a bead may move while it cures, as a share of the width."""
     return _read("green-movement", lambda raw: Limit(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def metals() -> Mapping[str, Metal]:
     """What curing vapours do to metals and minerals."""
     return _read("metals", lambda raw: Metal(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def cautions() -> Mapping[str, Caution]:
     """Every caution, in the file's order."""
     return _read("cautions", lambda raw: Caution(**raw))
 
 
-@lru_cache(maxsize=None)
+@cache
 def _compiled() -> tuple[tuple[Caution, Any], ...]:
     return tuple((item, compile_when(item.id, item.when)) for item in cautions().values())
 

@@ -2,8 +2,8 @@
 
 Every condition in a row must hold. A list under `region`, `use`, `kind` or `family` holds when the
 fact is one of them; under `substrate_tags`, `family_tags` or `flags` when any of them is present;
-`substrate_tags_all` and `flags_all` want every one, `not_flags` and `not_substrate_tags` none. `year_from` and `year_to` want a
-known year of building, `year_unknown` wants none.
+`substrate_tags_all` and `flags_all` want every one, `not_flags` and `not_substrate_tags` none.
+`year_from` and `year_to` want a known year of building, `year_unknown` wants none.
 """
 
 from __future__ import annotations
