@@ -74,6 +74,7 @@ SPEAKS = [
     ("three-sided", {}, {"flags": ["still"]}),
     ("three-sided-still", {"flags": ["still"]}, {}),
     ("brick-frame", {"substrates": ["brick-clay", "concrete"]}, {"substrates": ["brick-clay", "brick-clay"]}),
+    ("brick-frame", {"substrates": ["brick-clay", "concrete"]}, {"substrates": ["tile-ceramic", "block-dense"]}),
     ("brick-closes", {"substrates": ["brick-clay"]}, {"substrates": ["tile-ceramic"]}),
     ("concrete-opens", {"substrates": ["brick-calcium-silicate"]}, {"substrates": ["limestone"]}),
     ("timber-moisture", {"substrates": ["oak-across"]}, {"substrates": ["oak-along"]}),
