@@ -308,6 +308,8 @@ JOINT = Group(
         Field("old_sealant", "Old sealant comes out first", "flag", section="Circumstances"),
         Field("enclosed_room", "Closed room", "flag", section="Circumstances", help="A bathroom, a shaft, a plant room."),
         Field("grinding", "Joint faces will be cut or ground", "flag", section="Circumstances"),
+        Field("bitumen_contact", "Touches bitumen or asphalt", "flag", section="Circumstances"),
+        Field("other_sealant_contact", "Touches another sealant", "flag", section="Circumstances"),
         Field("painted", "Will be painted over", "flag", section="Circumstances", advanced=True),
         Field("note", "Notes", "note", multiline=True, section="Circumstances"),
     ),

@@ -6,7 +6,7 @@ from attrs import frozen
 
 from .. import catalogue
 from ..physics import section
-from ..working import COMMON_PRACTICE, Step, Value
+from ..working import Step, Value
 
 TAPE = "tape"
 
@@ -93,5 +93,5 @@ def backing_step(chosen: Backing, rod_type: catalogue.RodType, width_mm: float) 
     return Step(
         "rod", f"Rod, {chosen.label}", "D", "next standard size at or above w × (1 + oversize)", "{w} × (1 + {p})",
         {"w": Value(width_mm, "length"), "p": Value(rod_type.oversize_low_fraction, "number")}, Value(chosen.diameter_mm, "length"),
-        rod_type.source, COMMON_PRACTICE,
+        rod_type.source, rod_type.status,
     )  # fmt: skip

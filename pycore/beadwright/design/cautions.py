@@ -9,7 +9,7 @@ from .. import catalogue
 from .inputs import Project
 from .joint import Judgement
 
-_FLAGS = ("old_sealant", "enclosed_room", "grinding", "painted")
+_FLAGS = ("old_sealant", "enclosed_room", "grinding", "painted", "bitumen_contact", "other_sealant_contact")
 
 
 def _context(project: Project) -> dict[str, Any]:

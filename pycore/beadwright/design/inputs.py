@@ -191,7 +191,7 @@ def _sealant(name: str, values: Mapping[str, Any], path: str, reads: Reads) -> S
         extension = row.extension_fraction if row else None
         compression = row.compression_fraction if row else None
         total = values["own_total"] if values["own_total"] is not None else row.total_fraction if row else None
-        label, source = (f"{row.standard} {row.label}", row.source) if row else ("No class", "")
+        label, source = (row.label, row.source) if row else ("No class", "")
     family = catalogue.families().get(values["family"]) if values["family"] else None
     return Sealant(name, values["name"] or name, family, chosen, label, source, extension, compression, total, values)
 

@@ -47,11 +47,6 @@ class Need:
     width_mm: float
 
 
-def class_label(row: catalogue.MovementClass) -> str:
-    """A class with its standard, as it is written in a specification."""
-    return f"{row.standard} {row.label}"
-
-
 def capability_of(row: Sealant | catalogue.MovementClass, convention: str) -> Capability:
     """The capability of a sealant or of a catalogue class under one convention; never converted."""
     return Capability(convention, row.extension_fraction, row.compression_fraction, row.total_fraction)

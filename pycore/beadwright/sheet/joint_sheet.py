@@ -8,7 +8,7 @@ from typing import Any
 from ..design import depth as depths
 from ..design.bead import strained
 from ..design.joint import AT_LIMIT, BEYOND, REFERRED, UNKNOWN, WITHIN, Judgement
-from ..design.width import EACH_WAY, TOTAL_SWING, class_label
+from ..design.width import EACH_WAY, TOTAL_SWING
 from ..field.face import FaceAnswer
 from . import writing
 from .drawing import Section, section_svg
@@ -145,7 +145,7 @@ def _figures(judged: Judgement) -> dict[str, Any]:
             "governed_by": widths.governed_by.key, "governed_text": widths.governed_by.label,
             "present_mm": widths.present_mm, "judged_mm": widths.judged_mm, "use_fraction": min(widths.use_fraction, 1e9),
             "practical_least_mm": widths.practical_least_mm, "practical_most_mm": widths.practical_most_mm,
-            "by_class": [{"class": row.row.id, "label": class_label(row.row), "required_mm": row.required_mm, "design_mm": row.design_mm, "holds_present": row.holds_present} for row in widths.by_class],
+            "by_class": [{"class": row.row.id, "label": row.row.label, "required_mm": row.required_mm, "design_mm": row.design_mm, "holds_present": row.holds_present} for row in widths.by_class],
             "smallest_class": widths.smallest_class.id if widths.smallest_class else None,
             "convention": judged.capability.convention if judged.capability else None,
             "other_convention": {"convention": widths.other_convention, "required_mm": widths.other_required_mm},
@@ -291,7 +291,7 @@ def _class_band(judged: Judgement) -> Band:
         return _band("class", "Which class would do?", sealant.class_label, f"Chosen; {convention}. Enter a width to see the smallest class that would do.")
     if widths.smallest_class is None:
         return _band("class", "Which class would do?", "None in the tables", f"No class holds at this width; {convention}.", "bad")
-    return _band("class", "Which class would do?", class_label(widths.smallest_class), f"The smallest that holds at this width; {convention}. Chosen: {sealant.class_label}.")
+    return _band("class", "Which class would do?", widths.smallest_class.label, f"The smallest that holds at this width; {convention}. Chosen: {sealant.class_label}.")
 
 
 def _spacing_band(judged: Judgement, system: str) -> Band:
@@ -362,7 +362,7 @@ def _class_table(judged: Judgement, system: str) -> dict[str, Any]:
     rows = []
     for row in widths.by_class:
         holds = "–" if row.holds_present is None else "holds" if row.holds_present else "does not hold"
-        rows.append({"cells": [class_label(row.row), writing.up(row.required_mm, system), writing.length(row.design_mm, system), holds], "mark": "chosen" if row.row.id == sealant.class_id else None})
+        rows.append({"cells": [row.row.label, writing.up(row.required_mm, system), writing.length(row.design_mm, system), holds], "mark": "chosen" if row.row.id == sealant.class_id else None})
     other = f" Under the other convention ({CONVENTION_WORDS[widths.other_convention]}) {sealant.class_label} would ask for {writing.up(widths.other_required_mm, system)}." if widths.other_required_mm is not None else ""
     return _table("classes", "Width at each class", ("Class", "Movement asks", "Design width", "At this width"), rows,
                   f"Convention: {CONVENTION_WORDS[judged.capability.convention]}. Classes of different conventions are never turned into each other.{other}")  # fmt: skip
