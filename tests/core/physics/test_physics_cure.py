@@ -54,6 +54,22 @@ def test_warmer_air_of_the_same_humidity_cures_faster(temp_c, more_k, share, per
     assert cure.rate_factor(temp_c + more_k, share, permeation) > cure.rate_factor(temp_c, share, permeation)
 
 
+@given(st.floats(0.0, 60.0), st.floats(0.01, 1.0), st.floats(100.0, 20000.0))
+def test_a_negative_heat_of_permeation_evens_out_the_seasons(temp_c, share, size):
+    """It raises the rate below 23 degC and lowers it above."""
+    plain = cure.rate_factor(temp_c, share, 0.0)
+    found = cure.rate_factor(temp_c, share, -size)
+    if abs(temp_c - 23.0) > 0.01:
+        assert (found > plain) == (temp_c < 23.0)
+
+
+@given(st.floats(0.01, 0.25))
+def test_four_times_the_vapour_doubles_the_depth(share):
+    """Permeability does not depend on humidity, so the front goes with the root of the vapour pressure."""
+    four = cure.rate_factor(23.0, 4.0 * share, -12000.0)
+    assert four == pytest.approx(2.0 * cure.rate_factor(23.0, share, -12000.0), rel=1e-12)
+
+
 def test_dry_air_does_not_cure():
     assert cure.rate_factor(20.0, 0.0, -12000.0) == 0.0
 

@@ -185,6 +185,12 @@ def test_a_hollow_that_cuts_into_a_leg_is_refused():
         section.fillet_area_mm2(20.0, 6.0, 1.76, "concave")
 
 
+def test_a_bulge_past_half_a_circle_is_refused():
+    section.fillet_area_mm2(6.0, 8.0, 5.0, "convex")
+    with pytest.raises(ValueError, match=r"sagitta_mm is 5\.01"):
+        section.fillet_area_mm2(6.0, 8.0, 5.01, "convex")
+
+
 def test_an_unknown_word_is_refused():
     with pytest.raises(ValueError, match=r"face is 'round'.*'flat'"):
         section.fillet_area_mm2(6.0, 6.0, 1.0, "round")

@@ -68,6 +68,18 @@ def test_closing_is_monotonic(closing_mm, share, part, more_mm):
     assert not_less(strain.width_for_closing_mm(closing_mm + more_mm, share), width_mm)
 
 
+@given(st.floats(0.01, 200.0), st.floats(0.01, 1.0))
+def test_at_the_width_for_closing_the_gap_has_lost_its_share(closing_mm, share):
+    width_mm = strain.width_for_closing_mm(closing_mm, share)
+    assert strain.stretch_fraction(width_mm, -closing_mm * (1.0 - 1e-12), 0.0) == pytest.approx(-share, rel=1e-9)
+
+
+@given(SOME_MOVEMENT, SOME_MOVEMENT, CLASS)
+def test_swing_without_shear_is_the_whole_movement_over_the_total(opening_mm, closing_mm, share):
+    found_mm = strain.width_for_swing_mm(opening_mm, closing_mm, 0.0, share)
+    assert found_mm == pytest.approx((opening_mm + closing_mm) / share, rel=1e-12)
+
+
 @given(MOVEMENT, MOVEMENT, SHEAR, CLASS, MORE)
 def test_swing_is_monotonic_and_symmetric(opening_mm, closing_mm, shear_mm, share, more_mm):
     width_mm = strain.width_for_swing_mm(opening_mm, closing_mm, shear_mm, share)
