@@ -61,7 +61,7 @@ export async function variants(name, data) {
         kind === "br"
           ? {
               params: {
-                [constants.BROTLI_PARAM_QUALITY]: data.length > 4e6 ? 10 : 11,
+                [constants.BROTLI_PARAM_QUALITY]: data.length > 4e6 ? 9 : 11,
                 [constants.BROTLI_PARAM_LGWIN]: 24,
                 [constants.BROTLI_PARAM_SIZE_HINT]: data.length,
                 [constants.BROTLI_PARAM_MODE]: FAST_TEXT.test(name) ? constants.BROTLI_MODE_TEXT : constants.BROTLI_MODE_GENERIC,

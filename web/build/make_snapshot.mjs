@@ -1,6 +1,6 @@
 // Child of the build: boots Pyodide on our compiled library, unpacks the pure packages, imports
 // all of the core, answers every kind of question once, and writes the memory as it then is.
-// Usage: node make_snapshot.mjs JOB.json  (JOB: {runtime, stdlib, wheels[], demo, target})
+// Usage: node make_snapshot.mjs JOB.json  (JOB: {runtime, stdlib, lock, wheels[], demo, target})
 import { readFileSync, writeFileSync } from "node:fs";
 import { loadPyodide } from "pyodide";
 
@@ -8,6 +8,7 @@ const job = JSON.parse(readFileSync(process.argv[2], "utf8"));
 const pyodide = await loadPyodide({
   indexURL: job.runtime,
   stdLibURL: job.stdlib,
+  lockFileContents: readFileSync(job.lock, "utf8"),
   _makeSnapshot: true,
   env: { HOME: "/home/pyodide", PYTHONHASHSEED: "0", LANG: "C.UTF-8", TZ: "UTC" },
 });
@@ -15,6 +16,11 @@ const pyodide = await loadPyodide({
 job.wheels.forEach((wheel, index) => pyodide.FS.writeFile(`/tmp/w${index}.zip`, readFileSync(wheel)));
 pyodide.FS.writeFile("/tmp/demo.json", readFileSync(job.demo));
 const said = pyodide.runPython(readFileSync(new URL("./python/warm.py", import.meta.url), "utf8"));
-writeFileSync(job.target, pyodide.makeMemorySnapshot());
-process.stdout.write(`${said}\n`);
+const memory = pyodide.makeMemorySnapshot();
+// Zeros at the end need no file: the restored memory is made as long as this one and starts as zeros.
+let length = memory.length;
+while (length > 0 && memory[length - 1] === 0) length -= 1;
+length = Math.min(memory.length, Math.ceil(length / 65536) * 65536);
+writeFileSync(job.target, memory.subarray(0, length));
+process.stdout.write(JSON.stringify({ said, heapBytes: pyodide._module.HEAP8.length }));
 process.exit(0);

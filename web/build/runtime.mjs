@@ -1,7 +1,7 @@
 // The Python half of the build: library and packages as bytecode, our own lock, the snapshot.
 // Each stage is keyed by a hash over its inputs and kept in web/.cache, so that an unchanged
 // stage costs nothing.
-import { execFileSync } from "node:child_process";
+import { execFileSync, spawnSync } from "node:child_process";
 import { copyFileSync, existsSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from "node:fs";
 import { join } from "node:path";
 import { gunzipSync, gzipSync } from "node:zlib";
@@ -15,8 +15,18 @@ const SITE = "/lib/python3.14/site-packages/";
 const node = (script, job, folder) => {
   const file = join(folder, `${script}.job.json`);
   writeFileSync(file, JSON.stringify(job));
-  return execFileSync(process.execPath, ["--no-warnings", join(BUILD, script), file], { encoding: "utf8", stdio: ["ignore", "pipe", "inherit"], maxBuffer: 1e8 }).trim();
+  return run(process.execPath, ["--no-warnings", join(BUILD, script), file], script);
 };
+
+// Node quotes the line that threw, and a bundled loader is one line of a megabyte.
+const readable = (text) => text.split("\n").map((line) => (line.length > 300 ? `${line.slice(0, 120)} …` : line)).filter((line) => line.trim()).slice(-40).join("\n");
+
+/** Run a child quietly; its words are shown only when it fails. */
+function run(program, args, what) {
+  const done = spawnSync(program, args, { encoding: "utf8", stdio: ["ignore", "pipe", "pipe"], maxBuffer: 1e8 });
+  if (done.status !== 0) fail(`${what} failed.\n${readable(done.stderr || String(done.error ?? "") || done.stdout)}`);
+  return done.stdout.trim();
+}
 
 /** Make `folder` by `fill` unless a finished one is there; older ones of the same stage go away. */
 function stage(name, key, fill) {
@@ -68,7 +78,7 @@ function checkedNumpy(lock) {
 function pureWheels(python) {
   const list = join(WEB, "vendor", "wheels.txt");
   const folder = stage("wheels", hashOf([list]), (out) => {
-    execFileSync(python, ["-m", "pip", "download", "--quiet", "--disable-pip-version-check", "--no-deps", "--require-hashes", "--only-binary=:all:", "--python-version", "3.14", "-d", out, "-r", list], { stdio: ["ignore", "inherit", "inherit"] });
+    run(python, ["-m", "pip", "download", "--quiet", "--disable-pip-version-check", "--no-deps", "--require-hashes", "--only-binary=:all:", "--python-version", "3.14", "-d", out, "-r", list], "fetching the wheels of web/vendor/wheels.txt");
   });
   const pinned = readFileSync(list, "utf8").matchAll(/^([\w-]+)==(\S+)\s+--hash=sha256:(\w+)$/gm);
   return [...pinned].map(([, name, version, hash]) => {
@@ -103,7 +113,7 @@ export const demoJobs = () => listing(join(ROOT, "demo"), (name) => name.endsWit
 export function buildStatic(python) {
   const script = join(BUILD, "python", "static.py");
   return stage("static", hashOf([script, ...coreSources(), ...demoJobs()]), (out) => {
-    execFileSync(python, [script, out], { stdio: ["ignore", "inherit", "inherit"] });
+    run(python, [script, out], "writing the forms and demo jobs");
   });
 }
 
@@ -124,7 +134,7 @@ export function buildRuntime() {
   });
 
   const own = stage("core", hashOf([...compiler, join(BUILD, "python", "own_wheel.py"), bridge, join(ROOT, "pyproject.toml"), join(ROOT, "LICENSE"), ...coreSources()]), (out) => {
-    const base = execFileSync(python, [join(BUILD, "python", "own_wheel.py"), join(out, "source")], { encoding: "utf8" }).trim();
+    const base = run(python, [join(BUILD, "python", "own_wheel.py"), join(out, "source")], "making the core's wheel");
     node("compile_python.mjs", [{ source: join(out, "source", base), target: join(out, base), prefix: SITE, optimize: 0, wheel: true }], out);
   });
   const ownBase = readdirSync(own).find((name) => name.endsWith(".whl"));
@@ -158,14 +168,14 @@ export function buildRuntime() {
     writeFileSync(lockFile, lockText);
     const raw = join(out, "snapshot.bin");
     const common = { runtime: `${runtime}/`, stdlib: join(runtime, "python_stdlib.zip"), demo };
-    const said = node("make_snapshot.mjs", { ...common, wheels: packages.filter((item) => item.name !== "numpy").map((item) => item.file), target: raw }, out);
-    const checked = node("check_restore.mjs", { ...common, lock: lockFile, packages: `${join(runtime, "packages")}/`, snapshot: raw }, out);
+    const { said, heapBytes } = JSON.parse(node("make_snapshot.mjs", { ...common, lock: lockFile, wheels: packages.filter((item) => item.name !== "numpy").map((item) => item.file), target: raw }, out));
+    const checked = node("check_restore.mjs", { ...common, lock: lockFile, packages: `${join(runtime, "packages")}/`, snapshot: raw, heapBytes }, out);
     process.stdout.write(`build: snapshot of ${said}; ${checked}\n`);
     const bytes = readFileSync(raw);
     const packed = gzipSync(bytes, { level: 9 });
     if (!gunzipSync(packed).equals(bytes)) fail("the snapshot does not survive its own compression.");
     write(join(out, "snapshot.bin.gz"), packed);
-    writeFileSync(join(out, "raw.json"), JSON.stringify({ bytes: bytes.length }));
+    writeFileSync(join(out, "raw.json"), JSON.stringify({ rawBytes: bytes.length, heapBytes }));
     rmSync(raw);
     rmSync(runtime, { recursive: true });
   });
@@ -187,7 +197,7 @@ export function buildRuntime() {
     facts: {
       pyodide: pyodideVersion(), coreVersion, base, runtimeHash, packages: "packages/", lock,
       // The snapshot names the runtime that it was made on: any other is refused before it is tried.
-      snapshot: { url: snapshotUrl, sha256: sha256(snapshot), bytes: snapshot.length, rawBytes: JSON.parse(readFileSync(join(memory, "raw.json"), "utf8")).bytes, runtimeHash },
+      snapshot: { url: snapshotUrl, sha256: sha256(snapshot), bytes: snapshot.length, ...JSON.parse(readFileSync(join(memory, "raw.json"), "utf8")), runtimeHash },
       first: first.map(size),
     },
   };

@@ -13,11 +13,19 @@ from importlib.util import source_hash
 FIXED_TIME = (1980, 1, 1, 0, 0, 0)
 # What no program at run time opens: tests, type stubs, headers, the Fortran tool.
 DROPPED_PARTS = ("/tests/", "/include/", "numpy/f2py/", "pint/testsuite/")
+# Parts of the standard library that no browser program uses: processes, terminals, mail, debuggers.
+DROPPED_LIBRARY = frozenset(
+    "_pyrepl _pyio cProfile curses dbm doctest ensurepip ftplib idlelib imaplib mailbox multiprocessing"
+    " optparse pdb pickletools poplib profile pstats pty pydoc pydoc_data smtplib socketserver sqlite3"
+    " timeit tkinter trace tty turtle turtledemo unittest venv webbrowser wsgiref xmlrpc".split()
+)
 DROPPED_ENDS = (".pyi", ".pxd", ".a", ".h", ".c")
 
 
-def is_dropped(name):
-    return name.endswith(DROPPED_ENDS) or any(part in name for part in DROPPED_PARTS)
+def is_dropped(name, is_wheel):
+    if not is_wheel:
+        return name.split("/")[0].removesuffix(".py") in DROPPED_LIBRARY
+    return name.endswith("/RECORD") or name.endswith(DROPPED_ENDS) or any(part in name for part in DROPPED_PARTS)
 
 
 def compiled(name, data, prefix, optimize):
@@ -36,7 +44,7 @@ def repack(source, target, prefix, optimize, is_wheel):
     with zipfile.ZipFile(source) as opened:
         for entry in sorted(opened.infolist(), key=lambda item: item.filename):
             name = entry.filename
-            if entry.is_dir() or (is_wheel and (is_dropped(name) or name.endswith("/RECORD"))):
+            if entry.is_dir() or is_dropped(name, is_wheel):
                 continue
             data = opened.read(entry)
             if name.endswith(".py"):

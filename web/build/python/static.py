@@ -40,6 +40,7 @@ def main(out: Path) -> None:
     if first is None:
         print("build: demo/ holds no *.beadwright.json yet; the snapshot is warmed with a blank job", file=sys.stderr)
     dump(out / "first.json", first or blanks["metric"])
+    dump(out / "site" / "demo" / "first.json", first or blanks["metric"])
 
 
 if __name__ == "__main__":

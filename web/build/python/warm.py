@@ -54,4 +54,10 @@ _said = f"beadwright {beadwright.__version__}, {len(_ids)} joints evaluated, {le
 for _name in ("_ids", "_answer", "_job", "_wheel", "_opened", "_file", "_module", "_units", "_kind", "_id"):
     globals().pop(_name, None)
 gc.collect()
+
+# What was freed still holds its old bytes: overwrite it with zeros, which compress to nothing.
+_zeros = [bytearray(1 << size) for size, count in ((20, 3), (17, 8), (14, 64), (12, 128), (11, 256), (10, 512)) for _ in range(count)]
+_zeros.append([bytes(size - 40) for size in range(48, 513, 16) for _ in range(200)])
+del _zeros
+gc.collect()
 _said

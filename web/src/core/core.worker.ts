@@ -131,13 +131,26 @@ async function readSnapshot(facts: RuntimeFacts): Promise<ArrayBuffer> {
   return memory;
 }
 
+type Module = { HEAP8: Int8Array; _malloc(bytes: number): number };
+type CreateModule = (settings: unknown) => Promise<Module>;
+
+/** A fresh module's memory is smaller than a snapshot that grew: make room before it is written over. */
+async function roomyModule(facts: RuntimeFacts): Promise<CreateModule> {
+  const { default: create } = (await import(new URL(`${facts.base}pyodide.asm.mjs`, baseUrl).href)) as { default: CreateModule };
+  return async (settings) => {
+    const made = await create(settings);
+    while (made.HEAP8.length < facts.snapshot.heapBytes) if (made._malloc(1 << 20) === 0) throw new Error("no memory for the stored state");
+    return made;
+  };
+}
+
 async function startFromSnapshot(facts: RuntimeFacts): Promise<PyodideInterface> {
   say({ type: "progress", way: "snapshot", fraction: 0.2, text: "Starting the calculator from its stored state" });
   const memory = readSnapshot(facts);
   const watched = watchFetches("snapshot", [], false);
   const load = async (): Promise<PyodideInterface> => {
-    const { loadPyodide } = await loader(facts);
-    return loadPyodide({ ...optionsOf(facts), _loadSnapshot: memory });
+    const [{ loadPyodide }, createPyodideModule] = await Promise.all([loader(facts), roomyModule(facts)]);
+    return loadPyodide({ ...optionsOf(facts), createPyodideModule, _loadSnapshot: memory });
   };
   try {
     // The memory is watched on its own: a refusal must not wait for a load that never settles.

@@ -17,7 +17,7 @@ export interface RuntimeFacts {
   runtimeHash: string;
   packages: string;
   lock: object;
-  snapshot: SizedFile & { sha256: string; rawBytes: number; runtimeHash: string };
+  snapshot: SizedFile & { sha256: string; rawBytes: number; heapBytes: number; runtimeHash: string };
   first: SizedFile[];
 }
 
