@@ -26,6 +26,7 @@ let pyodide: PyodideInterface | null = null;
 let bridge: Bridge | null = null;
 let startedBy: StartWay = "precompiled";
 let baseUrl = "";
+let developerNumpy = "";
 
 /** A promise that never settles is Pyodide's answer to a damaged file: give each start a limit. */
 function within<T>(limitMs: number, what: string, work: Promise<T>): Promise<T> {
@@ -185,7 +186,8 @@ async function startPrecompiled(facts: RuntimeFacts): Promise<PyodideInterface> 
 async function startForDevelopers(): Promise<PyodideInterface> {
   const at = (name: string): string => new URL(`__dev/${name}`, baseUrl).href;
   say({ type: "progress", way: "developer", fraction: 0.1, text: "Starting Python as shipped (developer way)" });
-  const index = (await (await fetch(at("index.json"))).json()) as { loader: string[]; wheels: string[]; own: string };
+  const index = (await (await fetch(at("index.json"))).json()) as { loader: string[]; wheels: string[]; own: string; numpy: string };
+  developerNumpy = at(`wheels/${index.numpy}`);
   const { loadPyodide } = (await import(at("pyodide/pyodide.mjs"))) as Loader;
   const loaded = await loadPyodide({ indexURL: at("pyodide/") });
   say({ type: "progress", way: "developer", fraction: 0.6, text: "Installing the working tree's wheel with micropip" });
@@ -265,7 +267,7 @@ async function loadNumpy(): Promise<void> {
   say({ type: "numpy", state: "loading" });
   try {
     if (startedBy === "developer") {
-      await loadOrThrow(pyodide, [new URL("__dev/wheels/numpy", baseUrl).href]);
+      await loadOrThrow(pyodide, [developerNumpy]);
     } else {
       // After a restore the packages' files are missing from the file system: bring them too.
       await loadOrThrow(pyodide, startedBy === "snapshot" ? ["beadwright", "numpy"] : ["numpy"]);
