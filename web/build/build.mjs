@@ -3,10 +3,10 @@
 //   --developer  allow ?core=developer in the page's address
 //   --stamp TEXT goes into the app, so that two builds of one source differ (tests of updating)
 //   --entry, --html  another page than the app's (tests), relative to web/
-import { existsSync, mkdirSync, readFileSync, rmSync, rmdirSync, readdirSync, statSync } from "node:fs";
+import { existsSync, mkdirSync, readFileSync, rmSync, rmdirSync, readdirSync, statSync, writeFileSync } from "node:fs";
 import { join, resolve } from "node:path";
 import { parseArgs } from "node:util";
-import { WEB, fail, listing, megabytes, variants, write } from "./files.mjs";
+import { CACHE, WEB, fail, listing, megabytes, variants, write } from "./files.mjs";
 
 const [major] = process.versions.node.split(".").map(Number);
 if (major < 20) fail(`Node 20 or newer is needed; this is ${process.version}.`);
@@ -18,6 +18,26 @@ const { values: options } = parseArgs({
     out: { type: "string", default: join(WEB, "dist") }, stamp: { type: "string", default: "" }, entry: { type: "string" }, html: { type: "string" },
   },
 });
+
+// One build at a time: two of them would pull the cache from under each other.
+const lock = join(CACHE, "lock");
+mkdirSync(CACHE, { recursive: true });
+for (;;) {
+  try {
+    writeFileSync(lock, String(process.pid), { flag: "wx" });
+    break;
+  } catch {
+    const owner = Number(existsSync(lock) ? readFileSync(lock, "utf8") : 0);
+    try {
+      if (owner > 0) process.kill(owner, 0); // signal 0 only asks whether it lives
+      await new Promise((resolve) => setTimeout(resolve, 200));
+    } catch {
+      rmSync(lock, { force: true });
+    }
+  }
+}
+process.on("exit", () => rmSync(lock, { force: true }));
+for (const signal of ["SIGINT", "SIGTERM"]) process.on(signal, () => process.exit(1));
 
 const started = Date.now();
 const { buildRuntime, buildStatic, findPython } = await import("./runtime.mjs");

@@ -2,7 +2,7 @@
 // Each stage is keyed by a hash over its inputs and kept in web/.cache, so that an unchanged
 // stage costs nothing.
 import { execFileSync, spawnSync } from "node:child_process";
-import { copyFileSync, existsSync, mkdirSync, readdirSync, readFileSync, rmSync, writeFileSync } from "node:fs";
+import { copyFileSync, existsSync, mkdirSync, readdirSync, readFileSync, renameSync, rmSync, writeFileSync } from "node:fs";
 import { join } from "node:path";
 import { gunzipSync, gzipSync } from "node:zlib";
 import { CACHE, ROOT, WEB, fail, hashOf, listing, sha256, short, write } from "./files.mjs";
@@ -36,9 +36,11 @@ function stage(name, key, fill) {
   process.stdout.write(`build: ${name} …\n`);
   mkdirSync(CACHE, { recursive: true });
   for (const old of readdirSync(CACHE)) if (old.startsWith(`${name}-`)) rmSync(join(CACHE, old), { recursive: true, force: true });
-  mkdirSync(folder, { recursive: true });
-  fill(folder);
-  writeFileSync(join(folder, "done"), "");
+  const beside = `${folder}.part`;
+  mkdirSync(beside, { recursive: true });
+  fill(beside);
+  writeFileSync(join(beside, "done"), "");
+  renameSync(beside, folder);
   process.stdout.write(`build: ${name} done in ${((Date.now() - started) / 1000).toFixed(1)} s\n`);
   return folder;
 }
