@@ -14,6 +14,8 @@ import { askForAnswer } from "./working";
 const NAME = "Beadwright";
 
 export function boot(root: HTMLElement, neighbours: Neighbours): App {
+  // What the page showed before this ran makes room.
+  root.replaceChildren();
   const app = new App(firstState(neighbours), neighbours, (current) => draw(current, root));
   applyTheme(app.state.theme);
   listenToStore(app);

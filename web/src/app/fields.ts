@@ -1,7 +1,7 @@
 // Reading the field declarations: which fields show, what they offer, which unit a bare number takes.
 
 import type { Choice, FieldGroup, FieldSpec, Forms, Row, UnitSystem } from "./contract";
-import { get, getRow, getRows } from "./pointer";
+import { get, getRow, getRows, isRow } from "./pointer";
 
 export function groupOf(forms: Forms, key: string): FieldGroup {
   const found = forms.groups.find((group) => group.key === key);
@@ -86,6 +86,13 @@ export function choicesOf(spec: FieldSpec, forms: Forms, group: FieldGroup, job:
   return spec.choices ?? [];
 }
 
+/** How the core prints a unit: `°C` for a label such as `degC`. */
+export function signOf(forms: Forms | null, unit: string): string {
+  const signs = forms?.words["unit_signs"];
+  const sign = isRow(signs) ? signs[unit] : undefined;
+  return typeof sign === "string" ? sign : unit;
+}
+
 const UNIT_SIGNS = /[\p{L}'"°%′″’”‰]/u;
 
 /** What people type, with the unit of the chip put after a number that has none. */
@@ -110,6 +117,12 @@ export function blankRow(forms: Forms, key: string, system: UnitSystem): Row {
     if (value !== null && spec.advanced !== true) row[spec.key] = value;
   }
   return row;
+}
+
+/** A reading that only repeats what was typed says nothing. */
+export function tellingReading(reads: string | undefined, text: string): string | null {
+  const plain = (value: string): string => value.replaceAll(/[\s=]/g, "");
+  return reads === undefined || plain(reads) === plain(text) ? null : reads;
 }
 
 export function valueAt(job: Row, pointer: string): string {

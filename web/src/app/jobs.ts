@@ -75,14 +75,21 @@ export function showLoose(app: App, job: Row, reason: string): void {
 }
 
 export async function makeJob(app: App, units: UnitSystem): Promise<void> {
-  if (app.state.core.phase !== "ready") app.say("The new job opens as soon as the core is ready.");
   try {
-    const job = await app.core.call<Row>("blank", [units]);
+    const job = await blankJob(app, units);
     await keepNew(app, { ...job, id: newId(), date: today() }, "New job");
-    app.update({ notice: null });
+    app.update({ notice: null, opened: new Set([...app.state.opened, "job block"]) });
   } catch (error) {
     app.say(`The new job could not be made: ${messageOf(error)}`, "bad");
   }
+}
+
+/** An empty job as the core makes it; the build ships a copy, so that nobody waits for Python. */
+async function blankJob(app: App, units: UnitSystem): Promise<Row> {
+  if (app.state.core.phase === "ready") return app.core.call<Row>("blank", [units]);
+  const response = await fetch("blank.json").catch(() => null);
+  if (response?.ok !== true) return app.core.call<Row>("blank", [units]);
+  return ((await response.json()) as Record<UnitSystem, Row>)[units];
 }
 
 /** Keep a job that is new to this tablet, and open it. */
@@ -95,16 +102,15 @@ export async function keepNew(app: App, job: Row, reason: string): Promise<void>
 
 export async function openDemo(app: App, name: string): Promise<void> {
   try {
-    const demo = app.state.demos.find((item) => item.name === name) ?? app.state.demos[0];
-    const wanted = name || demo?.name;
-    if (wanted === undefined) throw new Error("this build has no demo job");
-    const response = await fetch(`demo/${encodeURIComponent(wanted)}.beadwright.json`);
-    if (!response.ok) throw new Error(`the demo “${wanted}” is not part of this build`);
-    const job = (await response.json()) as Row;
-    const id = String(job["id"]);
+    const demo = app.state.demos.find((item) => item.id === name || item.file === `demo/${name}.beadwright.json`) ?? (name === "" ? app.state.demos[0] : undefined);
+    if (demo === undefined) throw new Error("this build has no such demo job");
     const jobs = await app.store.list();
-    if (!jobs.some((summary) => summary.id === id)) await app.store.create(job as Job, "Demo job");
-    location.replace(href({ page: "wall", job: id }));
+    if (!jobs.some((summary) => summary.id === demo.id)) {
+      const response = await fetch(demo.file);
+      if (!response.ok) throw new Error(`its file is missing (${response.status})`);
+      await app.store.create({ ...((await response.json()) as Row), id: demo.id } as Job, "Demo job");
+    }
+    location.replace(href({ page: "wall", job: demo.id }));
   } catch (error) {
     app.say(`The demo could not be opened: ${messageOf(error)}`, "bad");
     go({ page: "jobs" });

@@ -11,4 +11,4 @@ const root = document.getElementById("app");
 if (root === null) throw new Error("the page has no place for the app");
 const core = new CoreClient();
 const store = await Store.open({ app: APP_VERSION });
-boot(root, { store, core, offline: offlineCopy(store) });
+boot(root, { store, core, offline: offlineCopy(store, core) });

@@ -59,8 +59,10 @@ export interface Notice {
   canUndo?: boolean;
 }
 
+/** A sample job of the build, as its `demo/index.json` lists it. */
 export interface Demo {
-  name: string;
+  file: string;
+  id: string;
   title: string;
 }
 

@@ -5,6 +5,7 @@ import type { App } from "../app/app";
 import type { Answer, AnswerTable, Caution, Issue, JointAnswer, Step } from "../app/contract";
 import { href } from "../app/routes";
 import { disclosure } from "./form";
+import { lettered } from "./letters";
 import { mark, toneOf } from "./marks";
 
 export interface VerdictParts {
@@ -49,23 +50,20 @@ export function bands(answers: Answer[]): TemplateResult {
 }
 
 const ROW_WORDS = { chosen: "in force", bad: "not enough" } as const;
+/** Longer cells may break; a figure with its unit may not. */
+const WHOLE_LETTERS = 12;
 
-export function table(data: AnswerTable): TemplateResult {
-  const hasMarks = data.rows.some((row) => row.mark);
-  return html`<div class="table-wrap" data-testid="table-${data.key}">
+export function table(data: AnswerTable, withTitle = true): TemplateResult {
+  return html`<div class="table-wrap" role="region" tabindex="0" aria-label=${data.title} data-testid="table-${data.key}">
     <table>
-      <caption>${data.title}</caption>
+      <caption class=${withTitle ? "" : "hidden-word"}>${data.title}</caption>
       <thead>
-        <tr>
-          ${data.columns.map((column) => html`<th scope="col" class=${column.align === "right" ? "right" : ""}>${column.label}</th>`)}
-          ${hasMarks ? html`<th scope="col"><span class="hidden-word">Mark</span></th>` : nothing}
-        </tr>
+        <tr>${data.columns.map((column) => html`<th scope="col" class=${column.align === "right" ? "right" : ""}>${column.label}</th>`)}</tr>
       </thead>
       <tbody>
         ${data.rows.map(
           (row) => html`<tr class=${row.mark ? `is-${row.mark}` : ""}>
-            ${row.cells.map((cell, at) => cellOf(cell, at, data.columns[at]?.align))}
-            ${hasMarks ? html`<td class="row-mark">${row.mark ? html`${ROW_WORDS[row.mark] ?? row.mark}` : nothing}</td>` : nothing}
+            ${row.cells.map((cell, at) => cellOf(cell, at, data.columns[at]?.align, row.mark))}
           </tr>`,
         )}
       </tbody>
@@ -74,9 +72,16 @@ export function table(data: AnswerTable): TemplateResult {
   </div>`;
 }
 
-function cellOf(cell: string, at: number, align: string | undefined): TemplateResult {
-  const tone = align === "right" ? "right" : "";
-  return at === 0 ? html`<th scope="row" class=${tone}>${cell}</th>` : html`<td class=${tone}>${cell}</td>`;
+function cellOf(cell: string, at: number, align: string | undefined, rowMark: "chosen" | "bad" | null | undefined): TemplateResult {
+  const look = `${align === "right" ? "right" : ""} ${cell.length <= WHOLE_LETTERS ? "whole" : ""}`;
+  if (at > 0) return html`<td class=${look}>${cell}</td>`;
+  // The weight of the row says it to the eye; to others a word does.
+  return html`<th scope="row" class=${look}>${cell}${rowMark ? html`<span class="hidden-word">, ${ROW_WORDS[rowMark] ?? rowMark}</span>` : nothing}</th>`;
+}
+
+/** Tables that stand ready behind their titles, and are printed whole. */
+export function tableDrawers(app: App, tables: AnswerTable[], owner: string): TemplateResult[] {
+  return tables.map((item) => html`<section class="drawer">${disclosure(app, `table ${owner} ${item.key}`, item.title, () => table(item, false), false, true)}</section>`);
 }
 
 /** The working, as three columns of a calculation sheet: reference, calculation, result. */
@@ -87,10 +92,10 @@ export function working(steps: Step[]): TemplateResult {
         <p class="step-source">${step.source ?? ""}${step.status && step.status !== "read" ? html` <span class="status">${step.status}</span>` : nothing}</p>
         <div class="step-lines">
           <p class="step-title">${step.title}</p>
-          ${step.formula ? html`<p class="step-formula">${step.formula}</p>` : nothing}
+          ${step.formula ? html`<p class="step-formula">${lettered(step.formula)}</p>` : nothing}
           ${step.numbers ? html`<p class="step-numbers">${step.numbers}</p>` : nothing}
         </div>
-        <p class="step-result">${step.symbol ? html`<i class="symbol">${step.symbol}</i> = ` : nothing}<b>${step.result}</b></p>
+        <p class="step-result">${step.symbol ? html`<i class="symbol">${lettered(step.symbol)}</i> = ` : nothing}<b>${step.result}</b></p>
       </li>`,
     )}
   </ol>`;
@@ -98,7 +103,7 @@ export function working(steps: Step[]): TemplateResult {
 
 export function workingPart(app: App, steps: Step[], name: string): TemplateResult | typeof nothing {
   if (steps.length === 0) return nothing;
-  return html`<section class="part" aria-label="Working">
+  return html`<section class="drawer" aria-label="Working">
     ${disclosure(app, name, html`Working, ${steps.length} steps`, () => working(steps), false, true)}
   </section>`;
 }

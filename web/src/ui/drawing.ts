@@ -8,7 +8,7 @@ const ATTRIBUTES = new Set(
     "class id x y x1 y1 x2 y2 cx cy r rx ry d points width height viewbox preserveaspectratio transform fill stroke stroke-width " +
     "stroke-dasharray stroke-linecap stroke-linejoin stroke-miterlimit fill-rule clip-rule opacity fill-opacity stroke-opacity font-size " +
     "text-anchor dominant-baseline dx dy rotate clip-path patternunits patterntransform patterncontentunits clippathunits marker-start " +
-    "marker-end markerwidth markerheight refx refy orient markerunits vector-effect role aria-label aria-hidden xmlns font-weight font-style data-part"
+    "marker-end markerwidth markerheight refx refy orient markerunits vector-effect role aria-label aria-hidden xmlns font-weight font-style font-family paint-order data-part"
   ).split(" "),
 );
 /** A value may point inside the drawing, and nowhere else. */

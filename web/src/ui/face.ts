@@ -2,7 +2,7 @@
 
 import { html, nothing, type TemplateResult } from "lit";
 import type { App } from "../app/app";
-import type { Check, FaceAnswer, Forms } from "../app/contract";
+import type { Check, FaceAnswer, Forms, JointAnswer } from "../app/contract";
 import { groupOf } from "../app/fields";
 import { getRows, rowNameOf } from "../app/pointer";
 import { href } from "../app/routes";
@@ -29,7 +29,7 @@ export function facePage(app: App, forms: Forms, id: string): TemplateResult {
         </div>
         <div class="actions"><a class="button" href=${href({ page: "joint", job: app.open.id, joint: id })}>Back to the joint</a></div>
       </header>
-      ${answer === undefined ? waiting(app) : verdict(face === null ? verdictOf(answer) : faceVerdict(face), app.state.isStale)}
+      ${answer === undefined ? waiting(app) : verdict(face === null ? unmeasured(answer) : faceVerdict(face), app.state.isStale)}
       ${answer !== undefined && app.state.coreFault !== null ? waiting(app) : nothing}
     </div>
     <div class="inputs" role="region" aria-label="Measured now" tabindex="-1">${form(app, forms, group, `${base}/face`, { isGlove: true })}</div>
@@ -37,6 +37,12 @@ export function facePage(app: App, forms: Forms, id: string): TemplateResult {
       ${face === null ? nothing : reasons(app, face, id)} ${issueList(app, (issue) => issue.path.startsWith(`${base}/`))}
     </div>
   </div>`;
+}
+
+/** Without readings there is no answer here; a joint that cannot be judged says why. */
+function unmeasured(answer: JointAnswer): VerdictParts {
+  if (answer.verdict === "unknown" || answer.verdict === "referred") return verdictOf(answer);
+  return { verdict: "unknown", word: "Not measured yet", text: "Enter what you read at the joint. The answer comes at once." };
 }
 
 function faceVerdict(face: FaceAnswer): VerdictParts {
@@ -53,6 +59,6 @@ function checkRow(check: Check): TemplateResult {
   return html`<li class="check tone-${name!}">
     <p class="check-word"><span>${word}</span>${mark(name!)}</p>
     <p class="check-label">${check.label}${check.text ? html`<span class="detail">${check.text}</span>` : nothing}</p>
-    <p class="check-values"><b>${check.value}</b>${check.limit ? html`<span class="detail">${check.limit}</span>` : nothing}</p>
+    <p class="check-values"><b>${check.value}</b>${check.limit ? html`<span class="detail">limit ${check.limit}</span>` : nothing}</p>
   </li>`;
 }

@@ -3,8 +3,9 @@
 import { html, nothing, type TemplateResult } from "lit";
 import type { App } from "../app/app";
 import type { FieldGroup, FieldSpec, Forms, Issue } from "../app/contract";
-import { choicesOf, forSystem, systemOf, unitIn, unitsOf, valueAt } from "../app/fields";
+import { choicesOf, forSystem, signOf, systemOf, tellingReading, unitIn, unitsOf, valueAt } from "../app/fields";
 import { get, join } from "../app/pointer";
+import { lettered } from "./letters";
 import { isGrouped, widgetFor, type Place } from "./widgets";
 
 /** Before every message a word, so that its weight does not hang on colour. */
@@ -22,7 +23,7 @@ export function field(app: App, forms: Forms, group: FieldGroup, spec: FieldSpec
   const reading = readingAt(app, pointer);
   const text = valueAt(app.job, pointer);
   const help = helpText(spec, app, text);
-  const units = unitsOf(spec, systemOf(app.job));
+  const units = unitsOf(spec, systemOf(app.job)).map((unit) => signOf(forms, unit));
   const place: Place = {
     spec,
     pointer,
@@ -39,7 +40,7 @@ export function field(app: App, forms: Forms, group: FieldGroup, spec: FieldSpec
     isGlove,
     describedBy: [help && `${id}-help`, reading && `${id}-reads`, ...issues.map((_, at) => `${id}-message-${at}`)].filter(Boolean).join(" "),
   };
-  const label = html`${spec.label}${spec.symbol ? html` <i class="symbol">${spec.symbol}</i>` : nothing}${spec.required && text === ""
+  const label = html`${spec.label}${spec.symbol ? html` <i class="symbol">${lettered(spec.symbol)}</i>` : nothing}${spec.required && text === ""
     ? html` <span class="needed">needed</span>`
     : nothing}`;
   return html`
@@ -75,7 +76,7 @@ function readingAt(app: App, pointer: string): string | null {
   const { result, isStale, pending } = app.state;
   // An old reading beside new text would contradict it.
   if (isStale && pending?.pointer === pointer) return null;
-  return result?.evaluation.readings[pointer]?.reads ?? null;
+  return tellingReading(result?.evaluation.readings[pointer]?.reads, valueAt(app.job, pointer));
 }
 
 function helpText(spec: FieldSpec, app: App, text: string): string {

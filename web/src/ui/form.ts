@@ -68,10 +68,3 @@ function toggle(app: App, name: string, isOpen: boolean): void {
 export function openParts(app: App, names: string[]): void {
   app.update({ opened: new Set([...app.state.opened, ...names]) });
 }
-
-/** Bring a heading into view and put the reading place there. */
-export function jumpTo(id: string): void {
-  const target = document.getElementById(id);
-  target?.scrollIntoView({ block: "start" });
-  target?.focus({ preventScroll: true });
-}

@@ -46,7 +46,7 @@ function known(app: App, incoming: Incoming): TemplateResult {
     return html`<p data-testid="import-same">This job is on this tablet already, and the file is the same.</p>`;
   }
   return html`<p>This job is on this tablet already. The file differs in ${count(incoming.changes.length, "place")}:</p>
-    <div class="table-wrap">
+    <div class="table-wrap" role="region" tabindex="0" aria-label="What differs">
       <table data-testid="import-changes">
         <thead><tr><th scope="col">Place</th><th scope="col">Change</th><th scope="col">On this tablet</th><th scope="col">In the file</th></tr></thead>
         <tbody>

@@ -7,6 +7,7 @@ import { sectionsOf } from "../app/fields";
 import { getRows, rowNameOf, split } from "../app/pointer";
 import { go } from "../app/jobs";
 import { fieldId, severityWord } from "./field";
+import { focusSoon } from "./focus";
 import { openParts } from "./form";
 
 const MOST_SHOWN = 6;
@@ -65,16 +66,6 @@ function partsAround(app: App, path: string): string[] {
     .filter((section) => section.advanced.some((spec) => spec.key === key))
     .map((section) => `more ${base} ${section.title}`);
   const [list, index] = split(path);
-  return list === "sealants" ? [...titles, `sealant ${index}`] : titles;
-}
-
-const TRIES = 20;
-const TRY_EVERY_MS = 50;
-
-function focusSoon(id: string, tries = TRIES): void {
-  const element = document.getElementById(id);
-  if (element !== null) {
-    element.scrollIntoView({ block: "center" });
-    element.focus();
-  } else if (tries > 0) setTimeout(() => focusSoon(id, tries - 1), TRY_EVERY_MS);
+  if (list === "sealants") return [...titles, `sealant ${index}`];
+  return list !== "joints" && list !== "site" ? [...titles, "job block"] : titles;
 }

@@ -20,7 +20,7 @@ export function jobsPage(app: App): TemplateResult {
       <button type="button" class="main" data-testid="new-metric" @click=${() => void makeJob(app, "metric")}>New job in mm and °C</button>
       <button type="button" class="main" data-testid="new-inch" @click=${() => void makeJob(app, "inch")}>New job in inches and °F</button>
       ${filePicker("open-file", "Open a job file", ".json,application/json", (file) => void takeFile(app, file))}
-      ${demos.map((demo) => html`<a class="button" data-testid="open-demo" href=${href({ page: "demo", name: demo.name })}>Demo: ${demo.title}</a>`)}
+      ${demos.map((demo) => html`<a class="button" data-testid="open-demo" href=${href({ page: "demo", name: demo.id })}>Demo: ${demo.title}</a>`)}
     </div>
     ${jobs === null ? html`<p class="waiting">Reading the jobs…</p>` : jobs.length === 0 ? empty() : list(app, jobs)}
     <section class="part" aria-labelledby="all-jobs">
@@ -53,7 +53,7 @@ function list(app: App, jobs: JobSummary[]): TemplateResult {
         (job) => job.id,
         (job) => html`<tr data-testid="job-row-${job.id}">
           <th scope="row"><a class="row-link" href=${href({ page: "wall", job: job.id })}>${job.title || "Untitled job"}</a></th>
-          <td class="num">${count(job.joints, "joint")}</td>
+          <td>${count(job.joints, "joint")}</td>
           <td>${clockText(job.savedAt)}</td>
           <td class="row-actions">${removal(app, job)}</td>
         </tr>`,

@@ -9,9 +9,11 @@ import { addRow, changeJob, newId, removeRow } from "../app/editing";
 import { blankRow, groupOf, systemOf } from "../app/fields";
 import { getRow, getRows, rowNameOf } from "../app/pointer";
 import { href } from "../app/routes";
-import { bands, cautions, notes, table, verdict, verdictOf, waiting, workingPart } from "./answers";
+import { bands, cautions, notes, tableDrawers, verdict, verdictOf, waiting, workingPart } from "./answers";
 import { drawingOf } from "./drawing";
-import { form, jumpTo } from "./form";
+import { fieldId } from "./field";
+import { focusSoon, jumpTo } from "./focus";
+import { form } from "./form";
 import { issueList } from "./issues";
 
 export function jointPage(app: App, forms: Forms, id: string): TemplateResult {
@@ -118,8 +120,7 @@ function answersOf(app: App, answer: JointAnswer, id: string): TemplateResult {
     ${answer.answers && answer.answers.length > 0 ? html`<section aria-label="Answers" class=${app.state.isStale ? "is-stale" : ""}>${bands(answer.answers)}</section>` : nothing}
     ${notes(answer.notes ?? [])}
     ${own.length > 0 ? html`<section class="part" aria-labelledby="own-cautions"><h2 id="own-cautions">Take care</h2>${cautions(app, own, false)}</section>` : nothing}
-    ${(answer.tables ?? []).map((item) => html`<section class="part">${table(item)}</section>`)}
-    ${workingPart(app, answer.steps ?? [], `working ${id}`)}
+    <div class="drawers">${tableDrawers(app, answer.tables ?? [], id)} ${workingPart(app, answer.steps ?? [], `working ${id}`)}</div>
     <div class="actions part">
       <a class="button" href=${href({ page: "sheet", job: app.open.id, joint: id })}>Sheet of this joint</a>
     </div>
@@ -184,9 +185,14 @@ function causes(app: App, forms: Forms, base: string, row: Row): TemplateResult 
     )}
     ${app.open.readOnly === null
       ? html`<div class="actions">
-          <button type="button" data-testid="add-cause" @click=${() => addRow(app, list, { id: newId(), ...blankRow(forms, "cause", systemOf(app.job)), label: "" }, "Added a cause")}>Add a cause</button>
+          <button type="button" data-testid="add-cause" @click=${() => addCause(app, forms, list, rows.length)}>Add a cause</button>
         </div>`
       : nothing}
   </section>`;
 }
 
+
+function addCause(app: App, forms: Forms, list: string, index: number): void {
+  addRow(app, list, { id: newId(), ...blankRow(forms, "cause", systemOf(app.job)) }, "Added a cause");
+  focusSoon(fieldId(`${list}/${index}/label`));
+}

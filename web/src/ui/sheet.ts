@@ -3,12 +3,13 @@
 import { html, nothing, type TemplateResult } from "lit";
 import type { App } from "../app/app";
 import type { FieldGroup, Forms, JointAnswer, Row } from "../app/contract";
-import { choicesOf, groupOf, shows, unitsOf, systemOf } from "../app/fields";
+import { choicesOf, groupOf, shows, systemOf, tellingReading, unitsOf } from "../app/fields";
 import { canShareFiles, exportFile, type ExportKind } from "../app/files";
 import { getRow, getRows, join, rowNameOf } from "../app/pointer";
 import { href } from "../app/routes";
 import { bands, cautions, notes, smallVerdict, table, verdict, verdictOf, waiting, working } from "./answers";
 import { drawingOf } from "./drawing";
+import { lettered } from "./letters";
 import { titleBlock } from "./title_block";
 
 const EXPORTS: readonly { kind: ExportKind; word: string }[] = [
@@ -70,8 +71,8 @@ function values(app: App, forms: Forms, group: FieldGroup, base: string): Templa
       const raw = row[spec.key];
       const choices = choicesOf(spec, forms, group, app.job, base);
       const text = raw === true ? "Yes" : (choices.find((choice) => choice.value === raw)?.label ?? String(raw));
-      const reading = unitsOf(spec, system).length > 0 ? app.state.result?.evaluation.readings[join(base, spec.key)]?.reads : undefined;
-      return html`<div><dt>${spec.label}${spec.symbol ? html` <i class="symbol">${spec.symbol}</i>` : nothing}</dt><dd>${text}${reading ? html` <span class="reads">${reading}</span>` : nothing}</dd></div>`;
+      const reading = unitsOf(spec, system).length > 0 ? tellingReading(app.state.result?.evaluation.readings[join(base, spec.key)]?.reads, text) : null;
+      return html`<div><dt>${spec.label}${spec.symbol ? html` <i class="symbol">${lettered(spec.symbol)}</i>` : nothing}</dt><dd>${text}${reading ? html` <span class="reads">${reading}</span>` : nothing}</dd></div>`;
     })}
   </dl>`;
 }
@@ -122,7 +123,7 @@ function jointSheet(app: App, forms: Forms, row: Row, index: number, answer: Joi
       <div><h3>${side.label} B</h3>${values(app, forms, side, `${base}/side_b`)}</div>
       ${causes.map((cause, at) => html`<div><h3>${rowNameOf(cause, "Cause", at)}</h3>${values(app, forms, groupOf(forms, "cause"), `${base}/causes/${at}`)}</div>`)}
     </div>
-    ${answer === undefined ? nothing : bands(answer.answers ?? [])} ${notes(answer?.notes ?? [])} ${(answer?.tables ?? []).map(table)}
+    ${answer === undefined ? nothing : bands(answer.answers ?? [])} ${notes(answer?.notes ?? [])} ${(answer?.tables ?? []).map((item) => table(item))}
     ${answer?.steps && answer.steps.length > 0 ? html`<h3>Working</h3>${working(answer.steps)}` : nothing}
     ${answer?.face ? html`<h3>${groupOf(forms, "face").label}</h3>${values(app, forms, groupOf(forms, "face"), `${base}/face`)}${verdict({ verdict: answer.face.verdict, word: answer.face.verdict_word, text: answer.face.verdict_text }, false)}${bands(answer.face.answers)}` : nothing}
   </section>`;

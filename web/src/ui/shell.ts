@@ -1,7 +1,7 @@
 // What stands around every page: the head with undo, banners, the facts at the foot.
 
 import { html, nothing, type TemplateResult } from "lit";
-import type { App } from "../app/app";
+import { messageOf, type App } from "../app/app";
 import { stepHistory } from "../app/editing";
 import { exportRaw } from "../app/files";
 import { discardDraft, restoreDraft, takeOver } from "../app/jobs";
@@ -40,14 +40,18 @@ function head(app: App): TemplateResult {
   const job = jobOf(route);
   return html`<header class="head">
     <nav class="crumbs" aria-label="Where you are">
-      <a class="brand" href=${href({ page: "jobs" })} aria-current=${route.page === "jobs" ? "page" : nothing}>Beadwright</a>
+      <a class="brand" href=${href({ page: "jobs" })} aria-current=${route.page === "jobs" ? "page" : nothing}>
+        ${job === null ? "Beadwright" : html`<span class="long">Beadwright</span><span class="short">Jobs</span>`}
+      </a>
       ${job !== null ? html`<a href=${href({ page: "wall", job })} aria-current=${route.page === "wall" ? "page" : nothing}>Wall</a>` : nothing}
       ${"joint" in route && route.joint !== null && job !== null && open !== null
-        ? html`<a href=${href({ page: "joint", job, joint: route.joint })} aria-current=${route.page === "joint" ? "page" : nothing}>${jointName(app, route.joint)}</a>`
+        ? html`<a class="in-joint" href=${href({ page: "joint", job, joint: route.joint })} aria-current=${route.page === "joint" ? "page" : nothing}>${jointName(app, route.joint)}</a>`
         : nothing}
-      ${job !== null ? html`<a href=${href({ page: "sheet", job, joint: null })} aria-current=${route.page === "sheet" ? "page" : nothing}>Sheet</a>` : nothing}
     </nav>
-    ${job !== null && open !== null && open.readOnly === null ? undoButtons(app) : nothing}
+    <div class="tools">
+      ${job !== null ? html`<a href=${href({ page: "sheet", job, joint: null })} aria-current=${route.page === "sheet" ? "page" : nothing}>Sheet</a>` : nothing}
+      ${job !== null && open !== null && open.readOnly === null ? undoButtons(app) : nothing}
+    </div>
   </header>`;
 }
 
@@ -70,7 +74,7 @@ function banners(app: App): TemplateResult {
   const isOfJob = open !== null && jobOf(route) === open.id;
   return html`
     ${offline.updateWaiting
-      ? banner("update", html`A newer version of the app is on this tablet.`, html`<button type="button" @click=${() => void app.offline.takeUpdate()}>Save and change to it</button>`)
+      ? banner("update", html`A newer version of the app is on this tablet.`, html`<button type="button" @click=${() => void app.offline.takeUpdate().catch((error: unknown) => app.say(`Not changed, since what is on screen could not be saved: ${messageOf(error)}`, "bad"))}>Save and change to it</button>`)
       : nothing}
     ${isOfJob && open.readOnly !== null
       ? banner(

@@ -11,9 +11,14 @@ import { go } from "../app/jobs";
 import { getRows, rowNameOf, split } from "../app/pointer";
 import { href } from "../app/routes";
 import { cautions, smallVerdict, staleNote, waiting } from "./answers";
-import { disclosure, form, jumpTo, openParts } from "./form";
+import { fieldId } from "./field";
+import { focusSoon, jumpTo } from "./focus";
+import { disclosure, form, openParts } from "./form";
 import { issueList } from "./issues";
 import { titleBlock } from "./title_block";
+
+/** Name of the drawer with the job's own fields; a new job opens with it (see app/jobs.ts). */
+const JOB_BLOCK = "job block";
 
 export function wallPage(app: App, forms: Forms): TemplateResult {
   const joints = getRows(app.job, "/joints");
@@ -48,6 +53,7 @@ export function wallPage(app: App, forms: Forms): TemplateResult {
         : nothing}
     </div>
     <div class="inputs" role="region" aria-label="Job, sealants and site" tabindex="-1">
+      <section aria-label=${groupOf(forms, "job").label} class="job-block">${titleDrawer(app, forms)}</section>
       <section aria-labelledby="sealants-title">
         <h2 id="sealants-title" tabindex="-1" class="inputs-title">Sealants</h2>
         ${sealants(app, forms)}
@@ -56,12 +62,14 @@ export function wallPage(app: App, forms: Forms): TemplateResult {
         <h2 id="site-title" tabindex="-1" class="inputs-title">${groupOf(forms, "site").label}</h2>
         ${form(app, forms, groupOf(forms, "site"), "/site")}
       </section>
-      <section aria-labelledby="job-title">
-        <h2 id="job-title" class="inputs-title">${groupOf(forms, "job").label}</h2>
-        ${form(app, forms, groupOf(forms, "job"), "")}
-      </section>
     </div>
   </div>`;
+}
+
+/** Seldom touched once it is filled in, so it stands shut above the rest. */
+function titleDrawer(app: App, forms: Forms): TemplateResult {
+  const group = groupOf(forms, "job");
+  return html`${disclosure(app, JOB_BLOCK, group.fields[0]?.section ?? group.label, () => form(app, forms, group, "", { level: 4 }))}`;
 }
 
 /** Settings that change how every verdict is to be read, shown where the job is named. */
@@ -185,6 +193,7 @@ function addSealant(app: App, forms: Forms): void {
   const row = { id: newId(), ...blankRow(forms, "sealant", systemOf(app.job)), name: `Sealant ${index + 1}` };
   changeJob(app, "Added a sealant", (job) => ({ ...job, sealants: [...getRows(job, "/sealants"), row] }));
   openParts(app, [`sealant ${index}`]);
+  focusSoon(fieldId(`/sealants/${index}/name`));
 }
 
 function removeSealant(app: App, index: number, name: string): void {
