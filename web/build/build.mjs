@@ -40,12 +40,13 @@ process.on("exit", () => rmSync(lock, { force: true }));
 for (const signal of ["SIGINT", "SIGTERM"]) process.on(signal, () => process.exit(1));
 
 const started = Date.now();
-const { buildRuntime, buildStatic, findPython } = await import("./runtime.mjs");
+const { buildRuntime, buildStatic, fetchWheels, findPython } = await import("./runtime.mjs");
 const { buildServiceWorker, buildShell } = await import("./shell.mjs");
 const out = resolve(options.out);
 
 const runtime = options.shell ? null : buildRuntime();
 const still = runtime ? runtime.still : buildStatic(findPython());
+if (options.developer) fetchWheels(findPython());
 const shell = await buildShell(runtime, options);
 
 const files = new Map([...shell, ...(runtime?.files ?? [])]);

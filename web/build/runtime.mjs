@@ -79,8 +79,9 @@ function checkedNumpy(lock) {
 /** The pure wheels of vendor/wheels.txt, fetched once with their hashes enforced. */
 function pureWheels(python) {
   const list = join(WEB, "vendor", "wheels.txt");
-  const folder = stage("wheels", hashOf([list]), (out) => {
-    run(python, ["-m", "pip", "download", "--quiet", "--disable-pip-version-check", "--no-deps", "--require-hashes", "--only-binary=:all:", "--python-version", "3.14", "-d", out, "-r", list], "fetching the wheels of web/vendor/wheels.txt");
+  const forDevelopers = join(WEB, "vendor", "wheels-developer.txt");
+  const folder = stage("wheels", hashOf([list, forDevelopers]), (out) => {
+    run(python, ["-m", "pip", "download", "--quiet", "--disable-pip-version-check", "--no-deps", "--require-hashes", "--only-binary=:all:", "--python-version", "3.14", "-d", out, "-r", list, "-r", forDevelopers], "fetching the wheels of web/vendor");
   });
   const pinned = readFileSync(list, "utf8").matchAll(/^([\w-]+)==(\S+)\s+--hash=sha256:(\w+)$/gm);
   return [...pinned].map(([, name, version, hash]) => {
@@ -118,6 +119,9 @@ export function buildStatic(python) {
     run(python, [script, out], "writing the forms and demo jobs");
   });
 }
+
+/** The wheels alone, for the developer way. */
+export const fetchWheels = (python) => void pureWheels(python);
 
 export function buildRuntime() {
   const python = findPython();
