@@ -204,3 +204,49 @@ def test_an_unreadable_quantity_is_named_at_its_field(path, text):
 @given(junk)
 def test_any_object_at_all_is_answered(job):
     assert json.loads(desk.to_json(desk.evaluate(job)))["issues"]
+
+
+# ---- good but wild input ----------------------------------------------------------------------
+
+length = st.sampled_from([0, 0.001, 0.5, 3, 10, 30, 100, 499]) | st.floats(0, 499)
+reading = st.floats(-89, 129).map(lambda value: f"{value:.1f} degC")
+
+
+def maybe(strategy):
+    return st.none() | strategy
+
+
+def as_mm(strategy):
+    return strategy.map(lambda value: f"{value:.4g} mm")
+
+
+wild = st.fixed_dictionaries({
+    "kind": kinds, "width": maybe(as_mm(length)), "width_is": st.sampled_from(["drawn", "built"]), "neck": maybe(as_mm(st.floats(0.001, 100))), "tool_sag": maybe(as_mm(st.floats(0, 50))),
+    "rod_sag": maybe(as_mm(st.floats(0, 50))), "rod": st.sampled_from(["closed-cell", "open-cell", "bicellular", "tape"]), "tooling": st.sampled_from(["concave", "flush"]),
+    "fabrication_tolerance": as_mm(st.floats(0, 100)), "seal_from": maybe(reading), "seal_to": maybe(reading),
+    "causes": st.lists(st.fixed_dictionaries({"opening": as_mm(length), "closing": as_mm(length), "shear": as_mm(length), "shear_across": as_mm(length)}), max_size=2),
+    "face": maybe(st.fixed_dictionaries({"width": as_mm(length), "surface": reading, "surface_b": maybe(reading), "air": st.floats(-89, 59).map(lambda value: f"{value:.1f} degC"),
+                                         "humidity": st.floats(0, 100).map(lambda value: f"{value:.1f} %"), "day_swing": maybe(st.just("40 K"))})),
+    "side_a": st.fixed_dictionaries({"length": st.floats(0.001, 190).map(lambda value: f"{value:.3f} m"), "fixity": st.sampled_from(["middle", "near-end", "far-end"]),
+                                     "length_along": maybe(st.just("5 m")), "summer_surface": reading, "winter_surface": reading}),
+})  # fmt: skip
+places = st.fixed_dictionaries({
+    "convention": st.sampled_from(["each-way", "total-swing"]), "closed_gap": st.sampled_from(["0 mm", "5 mm"]), "rod_series": st.sampled_from(["metric", "inch"]),
+    "depth_rule": st.sampled_from(["detailing-half", "german-facade", "tile", "uk-precast-silicone", "us-government"]),
+})  # fmt: skip
+
+
+def filled(value):
+    """Without the parts that were left out."""
+    return {key: filled(part) if isinstance(part, dict) else part for key, part in value.items() if part is not None}
+
+
+@settings(max_examples=400, deadline=None)
+@given(wild, places, st.sampled_from(["metric", "inch"]))
+def test_every_readable_joint_is_answered_with_finite_numbers(joint, site, units):
+    """Once a tolerance wider than the joint, and a hollow deeper than half of it, raised instead."""
+    job = make_job(filled(joint), site=site, units=units)
+    desk.to_json(desk.evaluate(job))
+    desk.to_json(desk.frames(job, "j"))
+    desk.export(job, "sheet")
+    desk.export(job, "schedule")

@@ -217,6 +217,7 @@ def read_joint(name: str, path: str, row: Mapping[str, Any], project: Project) -
         causes.append(read_group(CAUSE, cause, f"{path}/causes/{index}", reads, tables, label=f"Cause {index + 1}"))
     _require(values, sides, path, reads, tables)
     check_sealing_range(values, path, reads)
+    _check_sags(values, path, reads)
     has_errors = any(issue.severity == "error" for issue in reads.issues)
     face = _read_face(row.get("face"), f"{path}/face", reads, tables)
     has_face = any(face[key] is not None for key in ("width", "width_least", "width_most", "surface", "air", "humidity"))
@@ -225,6 +226,14 @@ def read_joint(name: str, path: str, row: Mapping[str, Any], project: Project) -
         name, path, values, sides[0], sides[1], tuple(causes), face, has_face, has_errors,
         typed.strip() if isinstance(typed, str) else "", reads,
     )  # fmt: skip
+
+
+def _check_sags(values: Mapping[str, Any], path: str, reads: Reads) -> None:
+    """A hollow or crown deeper than half the width is not an arc across the joint."""
+    for key in ("tool_sag", "rod_sag"):
+        sag, width = values[key], values["width"]
+        if sag is not None and width is not None and sag > width / 2:
+            reads.add(Issue(f"{path}/{key}", "too-large", "error", f"{JOINT[key].label} must be at most half the width.", value=sag, limit=width / 2, unit="mm"))
 
 
 def _read_face(raw: object, path: str, reads: Reads, tables: Tables) -> dict[str, Any]:

@@ -174,10 +174,14 @@ def _judge(joint: JointInput, project: Project, sealant: Sealant, use: catalogue
     else:
         rod_sag, rod_mm = values["rod_sag"], rod.diameter_mm
     is_concave = values["tooling"] != "flush" and kind != "lap"
-    shape = make_bead(basis, neck, tool_sag_mm=values["tool_sag"], rod_sag_mm=rod_sag, rod_mm=rod_mm, is_concave=is_concave)
+    tool_sag = values["tool_sag"]
+    if max(tool_sag or 0.0, rod_sag or 0.0) > basis / 2:
+        notes.append(Note("warning", "The hollow or crown entered is deeper than half the width found; half the width is used for the section."))
+        tool_sag, rod_sag = (None if sag is None else min(sag, basis / 2) for sag in (tool_sag, rod_sag))
+    shape = make_bead(basis, neck, tool_sag_mm=tool_sag, rod_sag_mm=rod_sag, rod_mm=rod_mm, is_concave=is_concave)
     opened = strained(shape, movement.opening_mm, movement.shear_mm)
     closed = strained(shape, -movement.closing_mm)
-    sealing = window.find_window(judged, movement, capability, gap)
+    sealing = window.find_window(judged, movement, capability, gap) if judged > 0 else window.NO_WIDTH
     verdict, reason = _verdict(widths)
     notes += _notes(joint, project, sealant, movement, widths, rule_depth, shape, is_porous, neck, kind)
     steps = list(movement.steps)

@@ -28,6 +28,9 @@ class Window:
         return self.from_c is None
 
 
+NO_WIDTH = Window(None, None, "tolerance", "tolerance", "The tolerance eats the whole width.")
+
+
 def _slack(width_mm: float, movement: Movement, capability: Capability, gap_mm: float) -> tuple[float, float]:
     """Greatest opening and greatest closing that the class allows at this width. [mm]"""
     assert capability.extension_fraction is not None and capability.compression_fraction is not None
