@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import concurrent.futures
 import contextlib
 import http.server
 import os
@@ -93,6 +94,17 @@ def store_browser():
         browser = pw.chromium.launch(executable_path=find_chromium(), args=CHROMIUM_ARGUMENTS)
         yield browser
         browser.close()
+
+
+@pytest.fixture(scope="session")
+def in_own_thread():
+    """Call something in a thread of its own: one thread holds only one Playwright."""
+
+    def call(function, *args, **named):
+        with concurrent.futures.ThreadPoolExecutor(1) as pool:
+            return pool.submit(function, *args, **named).result()
+
+    return call
 
 
 @pytest.fixture

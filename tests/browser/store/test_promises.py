@@ -65,7 +65,7 @@ def test_promise_1_a_write_that_is_cut_off_leaves_the_old_revision_whole(page):
         }
         return seen; }"""
     )
-    assert {row["at"] for row in result} == {"put0", "put1", "put2", "get0", "get1", "get2", "delete0"}
+    assert {row["at"] for row in result} == {"put0", "put1", "put2", "get0", "get1", "get2", "delete0", "delete1"}
     for row in result:
         assert row["sound"] and row["notes"] == 1, row
     assert not all(row["ok"] for row in result), "no write was really cut off"

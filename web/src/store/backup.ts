@@ -270,7 +270,8 @@ async function* readWhole(file: Blob, issues: string[]): AsyncGenerator<Line> {
     const text = await file.text();
     if (!isOurs(text)) throw new Error("other");
     value = JSON.parse(text) as { records?: unknown };
-  } catch {
+  } catch (error) {
+    if (error instanceof StoreError) throw error;
     throw new StoreError("refused", "This is not a backup file of this app.");
   }
   const records = Array.isArray(value.records) ? (value.records as unknown[]) : [];

@@ -7,6 +7,7 @@ import { StoreError } from "./types";
 
 /** The browser may never answer: no one waits longer than this. */
 const OPEN_LIMIT_MS = 8_000;
+const OPEN_AGAIN_MS = 400;
 const WORK_LIMIT_MS = 20_000;
 
 export interface Schema extends DBSchema {
@@ -52,10 +53,21 @@ export class Database {
   async open(): Promise<Handle> {
     if (this.#isRetired) throw new StoreError("newer-app", "The database belongs to a newer version of the app.");
     if (this.#handle !== null) return this.#handle;
-    this.#opening ??= this.#openOnce().finally(() => {
+    this.#opening ??= this.#openTwice().finally(() => {
       this.#opening = null;
     });
     return this.#opening;
+  }
+
+  async #openTwice(): Promise<Handle> {
+    try {
+      return await this.#openOnce();
+    } catch (error) {
+      // After a crash the files may still be held for a moment by what is left of the old process.
+      if (!isConnectionFault(error) || nameOf(error) === "TimeoutError") throw error;
+      await new Promise((resolve) => setTimeout(resolve, OPEN_AGAIN_MS));
+      return this.#openOnce();
+    }
   }
 
   async #openOnce(): Promise<Handle> {

@@ -60,6 +60,8 @@ export class Store extends EventTarget {
   #core: string;
   #tables: string[];
   #stopped: string | null = null;
+  /** Why the kept jobs could not be reached when the page started, ready to show, or null. */
+  startProblem: string | null = null;
 
   private constructor(options: StoreOptions) {
     super();
@@ -73,7 +75,11 @@ export class Store extends EventTarget {
     };
     const name = options.name ?? DEFAULT_NAME;
     this.#db = new Database(name, options.databaseVersion ?? DATABASE_VERSION, {
-      onVersionChange: () => this.#stop(TEXT.newerApp),
+      onVersionChange: () => {
+        // The newer app has changed nothing yet: last words are still welcome.
+        this.#hurry();
+        this.#stop(TEXT.newerApp);
+      },
       onBlocked: () => this.#emit("notice", { id: null, text: TEXT.blocked }),
     });
     this.#channel = new Channel(name);
@@ -97,7 +103,9 @@ export class Store extends EventTarget {
       const mended = await mendPointers(store.#db);
       if (mended.length > 0) store.#emit("jobs", { id: null, rev: null, isOther: false });
     } catch (error) {
-      if (toStoreError(error).code === "newer-app") store.#stopped = TEXT.newerApp;
+      const { code, message } = toStoreError(error);
+      if (code === "newer-app") store.#stopped = TEXT.newerApp;
+      store.startProblem = code === "newer-app" ? TEXT.newerApp : code === "no-storage" ? TEXT.noStorage : message;
     }
     return store;
   }
@@ -150,7 +158,7 @@ export class Store extends EventTarget {
     const session = new Session(job.id, this.#context);
     session.isWriter = true;
     this.#sessions.set(job.id, session);
-    session.begin(null, jsonCopy(job), null, undefined);
+    session.begin(null, jsonCopy(job), { offered: [], slots: [] }, undefined);
     if (this.#stopped !== null) session.readOnly = { code: "newer-app", reason: this.#stopped };
     await session.commit(job, reason);
   }
@@ -201,23 +209,15 @@ export class Store extends EventTarget {
 
   async restoreDraft(id: string): Promise<Job> {
     const session = this.#session(id);
-    const draft = session.offered;
-    if (draft === null) throw new StoreError("not-found", "There is no draft of this job.");
+    const [draft] = session.offered;
+    if (draft === undefined) throw new StoreError("not-found", "There is no draft of this job.");
     const job = draft.envelope.payload;
     await session.commit(job, "Draft restored");
     return jsonCopy(job);
   }
 
   async discardDraft(id: string, keepCopy = true): Promise<void> {
-    const session = this.#session(id);
-    const draft = session.offered;
-    if (draft === null) return;
-    await this.#db.write(["drafts"], "strict", async (tx) => {
-      const drafts = tx.objectStore("drafts");
-      if (keepCopy) await drafts.put({ ...draft, slot: `kept ${draft.envelope.saved_at}` });
-      await drafts.delete([id, "now"]);
-    });
-    session.offered = null;
+    await this.#session(id).discardOffered(keepCopy);
   }
 
   async keptDrafts(id: string): Promise<{ slot: string; at: string; job: Job }[]> {
@@ -472,7 +472,7 @@ export class Store extends EventTarget {
     session.readOnly = reading.readOnly;
     if (this.#stopped !== null) session.readOnly ??= { code: "newer-app", reason: this.#stopped };
     if (!isWriter) session.readOnly ??= { code: "other-window", reason: TEXT.otherWindow };
-    session.begin(reading.pointer, reading.job, reading.draft, reading.history);
+    session.begin(reading.pointer, reading.job, reading.drafts, reading.history);
     session.skipTo(reading.highestRev);
     this.#sessions.get(id)?.stop();
     this.#sessions.set(id, session);
@@ -480,8 +480,8 @@ export class Store extends EventTarget {
       await setAside(this.#db, id, reading);
       this.#emit("facts", {});
     }
-    const { draft } = reading;
-    const offer = draft === null ? null : { job: jsonCopy(draft.envelope.payload), at: draft.envelope.saved_at };
+    const [draft] = reading.drafts.offered;
+    const offer = draft === undefined ? null : { job: jsonCopy(draft.envelope.payload), at: draft.envelope.saved_at };
     return this.#result(session, offer, reading.recovered);
   }
 
@@ -579,8 +579,6 @@ export class Store extends EventTarget {
   /** A newer app owns the data: nothing more is written from this window. */
   #stop(text: string): void {
     if (this.#stopped !== null) return;
-    // Transactions that are begun here, before the handle closes, still go through unless the newer app has migrated.
-    this.#hurry();
     this.#stopped = text;
     for (const session of this.#sessions.values()) void session.demote({ code: "newer-app", reason: text }, false);
     this.#locks.releaseAll();

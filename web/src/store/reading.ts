@@ -29,7 +29,8 @@ export interface Rules {
 export interface Reading {
   pointer: Pointer | null;
   job: Job;
-  draft: DraftRecord | null;
+  /** Drafts that say something else than the job, newest first, and the places of all that were found. */
+  drafts: { offered: DraftRecord[]; slots: string[] };
   history: unknown;
   recovered: string | null;
   readOnly: OpenResult["readOnly"];
@@ -39,46 +40,55 @@ export interface Reading {
 }
 
 export async function readJob(db: Database, id: string, rules: Rules): Promise<Reading> {
-  const { pointer, draft, history, schema, head } = await db.read(["jobs", "revisions", "drafts", "meta"], async (tx) => {
+  const { pointer, found: foundDrafts, history, schema, head } = await db.read(["jobs", "revisions", "drafts", "meta"], async (tx) => {
     const pointer = await tx.objectStore("jobs").get(id);
-    const [draft, history, schema, head] = await Promise.all([
-      tx.objectStore("drafts").get([id, "now"]),
+    const [found, history, schema, head] = await Promise.all([
+      tx.objectStore("drafts").getAll(IDBKeyRange.bound([id, "left "], [id, "now"])),
       tx.objectStore("meta").get(`history/${id}`),
       tx.objectStore("meta").get("schema"),
       pointer === undefined ? undefined : tx.objectStore("revisions").get([id, pointer.rev]),
     ]);
-    return { pointer, draft, history: history?.value, schema: schema?.value, head };
+    return { pointer, found, history: history?.value, schema: schema?.value, head };
   });
-  if (pointer === undefined && draft === undefined) throw new StoreError("not-found", "There is no such job on this tablet.");
+  if (pointer === undefined && foundDrafts.length === 0) throw new StoreError("not-found", "There is no such job on this tablet.");
 
   const faulty: Reading["faulty"] = [];
   const isNewer = typeof schema === "number" && schema > rules.schema;
-  const reading = { draft: null, history, recovered: null, faulty, highestRev: pointer?.rev ?? 0 };
+  const none = { offered: [], slots: [] };
+  const reading = { drafts: none, history, recovered: null, faulty, highestRev: pointer?.rev ?? 0 };
   if (head !== undefined && head.schema > rules.schema) {
     const readOnly = { code: "newer-record" as const, reason: TEXT.newerRecord };
     return { ...reading, pointer: pointer ?? null, job: asJob(head.payload, id), readOnly };
   }
 
   const readOnly = isNewer ? { code: "newer-app" as const, reason: TEXT.newerApp } : null;
-  const soundDraft = await checkDraft(draft, rules, faulty);
+  const sound: DraftRecord[] = [];
+  for (const draft of foundDrafts) {
+    const checked = await checkDraft(draft, rules, faulty);
+    if (checked !== null) sound.push(checked);
+  }
+  sound.sort((a, b) => b.envelope.saved_at.localeCompare(a.envelope.saved_at));
+  const slots = sound.map((draft) => draft.slot);
   const found = pointer === undefined ? null : await findSound(db, id, pointer, head, rules, faulty);
   if (found === null) {
-    if (soundDraft === null) {
+    const [newest, ...others] = sound;
+    if (newest === undefined) {
       const reason = faulty[0]?.reason ?? "it is missing";
       throw new StoreError("damaged", `No copy of this job can be read: ${reason}. What was found is set aside.`, faulty);
     }
-    const job = soundDraft.envelope.payload;
+    const job = newest.envelope.payload;
     const recovered = "No saved copy of this job could be read. The draft was opened instead.";
-    return { ...reading, pointer: null, job, readOnly, recovered: pointer === undefined ? null : recovered };
+    return { ...reading, drafts: { offered: others, slots }, pointer: null, job, readOnly, recovered };
   }
 
   const first = faulty.find((f) => f.from === "revisions");
-  const isSame = soundDraft !== null && canonicalText(soundDraft.envelope.payload) === canonicalText(found.job);
+  const shown = canonicalText(found.job);
+  const offered = sound.filter((draft) => canonicalText(draft.envelope.payload) !== shown);
   return {
     ...reading,
     pointer: found.pointer,
     job: found.job,
-    draft: isSame ? null : soundDraft,
+    drafts: { offered, slots },
     readOnly,
     recovered: first === undefined ? null : recoveredText(pointer!.rev, first.reason, found.pointer.saved_at),
   };
@@ -144,8 +154,7 @@ async function isAccepted(validate: (job: Job) => Promise<boolean>, job: Job): P
   }
 }
 
-async function checkDraft(draft: DraftRecord | undefined, rules: Rules, faulty: Reading["faulty"]): Promise<DraftRecord | null> {
-  if (draft === undefined) return null;
+async function checkDraft(draft: DraftRecord, rules: Rules, faulty: Reading["faulty"]): Promise<DraftRecord | null> {
   const fault = findFault(draft.envelope) ?? (draft.envelope.schema > rules.schema ? "a newer app wrote it" : null);
   if (fault === null) {
     const { job, why } = await understand(draft.envelope, { ...rules, validate: null });

@@ -61,8 +61,10 @@ export class Session {
   pointer: Pointer | null = null;
   /** What the screen shows: the last thing committed or typed. */
   latest: Job | null = null;
-  /** A draft found at the start about which the user has not decided. */
-  offered: DraftRecord | null = null;
+  /** Drafts found at the start about which the user has not decided; the first one is offered. */
+  offered: DraftRecord[] = [];
+  /** Every draft there was at the start, the ones that say nothing new too. */
+  #foundSlots: string[] = [];
   history: HistoryRecord = { entries: [], at: -1 };
   #nextRev = 1;
   #queue: Waiting[] = [];
@@ -84,10 +86,11 @@ export class Session {
   }
 
   /** The load has ended: from here on, and not before, things may be written. */
-  begin(pointer: Pointer | null, job: Job, offered: DraftRecord | null, history: unknown): void {
+  begin(pointer: Pointer | null, job: Job, drafts: { offered: DraftRecord[]; slots: string[] }, history: unknown): void {
     this.pointer = pointer;
     this.latest = job;
-    this.offered = offered;
+    this.offered = drafts.offered;
+    this.#foundSlots = drafts.slots;
     this.#nextRev = Math.max(0, pointer?.rev ?? 0, ...(pointer?.revisions.map((r) => r.rev) ?? [])) + 1;
     this.history = checkedHistory(history);
     if (pointer !== null && this.history.entries[this.history.at]?.rev !== pointer.rev) {
@@ -108,7 +111,7 @@ export class Session {
   }
 
   get historyState(): HistoryState {
-    return describe(this.history);
+    return describe(this.#historyWithQueue());
   }
 
   get state(): SaveState {
@@ -139,7 +142,6 @@ export class Session {
     this.#ctx.onState(this);
   }
 
-  /** Begins its transaction in this very turn when the database is open: the page may be going away. */
   async writeDraft(durability: "relaxed" | "strict"): Promise<void> {
     clearTimeout(this.#draftTimer);
     const typed = this.#typed;
@@ -150,10 +152,10 @@ export class Session {
       const envelope = seal<Job>({ kind: "draft", ...this.#identity(), rev, parent: rev, saved_at: now, payload: jsonCopy(typed) });
       await this.#ctx.db.write(["jobs", "drafts", "meta"], durability, async (tx) => {
         await this.#guard(tx);
-        await this.#keepOffered(tx, null);
+        await this.#clearDrafts(tx, null);
         await tx.objectStore("drafts").put({ id: this.id, slot: "now", envelope });
       });
-      this.offered = null;
+      this.#forgetDrafts();
       this.#isClaimed = true;
       if (this.#typed === typed) this.#draftAt = now;
       if (this.#queue.length === 0) this.#recover();
@@ -235,10 +237,35 @@ export class Session {
     if (this.#failure !== null && this.hasUnsaved) throw new StoreError("failed", this.#failure);
   }
 
-  /** The page is being hidden: start every write that can still start. */
+  /** The page is being hidden, perhaps for good. */
   hurry(): void {
-    void this.writeDraft("relaxed").catch(() => undefined);
+    if (!this.isLoaded || this.readOnly !== null) return;
+    if (this.#queue.length > 0 || (this.#typed !== null && this.#draftAt === null)) this.#writeLastWords();
     void this.#pump();
+  }
+
+  /**
+   * One put and an explicit commit, both in this turn: a page that goes away never hears the answer to a question, so
+   * the usual checks cannot be made. The record therefore has a place of its own, where it cannot harm another's.
+   */
+  #writeLastWords(): void {
+    const handle = this.#ctx.db.handle;
+    if (handle === null) return;
+    const now = new Date().toISOString();
+    const rev = this.pointer?.rev ?? 0;
+    try {
+      const envelope = seal<Job>({ kind: "draft", ...this.#identity(), rev, parent: rev, saved_at: now, payload: jsonCopy(this.latest!) });
+      const tx = handle.transaction("drafts", "readwrite", { durability: "relaxed" });
+      tx.done.catch(() => undefined);
+      tx.store.put({ id: this.id, slot: this.#lastWordsSlot, envelope }).catch(() => undefined);
+      tx.commit();
+    } catch {
+      // Nothing more can be done in this turn; the timer and the queue go on if the page does.
+    }
+  }
+
+  get #lastWordsSlot(): string {
+    return `left ${this.#ctx.window}`;
   }
 
   stop(): void {
@@ -279,7 +306,7 @@ export class Session {
         this.pointer = pointer;
         this.history = history;
         this.#nextRev = pointer.rev + 1;
-        this.offered = null;
+        this.#forgetDrafts();
         this.#isClaimed = true;
         this.#recover();
         for (const item of batch) this.#remember(item.envelope!.rev, item.job);
@@ -356,7 +383,7 @@ export class Session {
         () => tx.objectStore("jobs").put(pointer),
         () => meta.put({ key: `history/${this.id}`, value: finalHistory }),
         async () => {
-          await this.#keepOffered(tx, newest.job);
+          await this.#clearDrafts(tx, newest.job);
           if (isDraftDone) await tx.objectStore("drafts").delete([this.id, "now"]);
         },
       ]);
@@ -381,15 +408,39 @@ export class Session {
     return pointer;
   }
 
-  /** A draft that was offered and not decided on is set aside before another takes its place. */
-  async #keepOffered(tx: unknown, committed: Job | null): Promise<void> {
-    const { offered } = this;
-    if (offered === null) return;
-    if (committed !== null && canonicalText(committed) === canonicalText(offered.envelope.payload)) return;
+  /** Drafts that were offered and not decided on are set aside before others take their place. */
+  async #clearDrafts(tx: unknown, committed: Job | null): Promise<void> {
     const drafts = (tx as WriteTx<"drafts">).objectStore("drafts");
-    await drafts.put({ ...offered, slot: `kept ${offered.envelope.saved_at}` });
+    const now = committed === null ? null : canonicalText(committed);
+    const undecided = this.offered.filter((draft) => canonicalText(draft.envelope.payload) !== now);
+    await together([
+      ...undecided.map((draft) => () => drafts.put(keptCopy(draft))),
+      ...this.#foundSlots.map((slot) => () => drafts.delete([this.id, slot])),
+      () => drafts.delete([this.id, this.#lastWordsSlot]),
+    ]);
+    if (undecided.length === 0) return;
     const kept = await drafts.getAllKeys(IDBKeyRange.bound([this.id, "kept "], [this.id, "kept \uffff"]));
     await together(kept.slice(0, Math.max(0, kept.length - MOST_KEPT_DRAFTS)).map((key) => () => drafts.delete(key)));
+  }
+
+  #forgetDrafts(): void {
+    this.offered = [];
+    this.#foundSlots = [];
+  }
+
+  /** The user has said no to the offered draft. */
+  async discardOffered(keepCopy: boolean): Promise<void> {
+    const [first, ...rest] = this.offered;
+    if (first === undefined) return;
+    const slots = this.#foundSlots;
+    await this.#ctx.db.write(["drafts"], "strict", async (tx) => {
+      const drafts = tx.objectStore("drafts");
+      await together([
+        ...(keepCopy ? [first, ...rest] : rest).map((draft) => () => drafts.put(keptCopy(draft))),
+        ...slots.map((slot) => () => drafts.delete([this.id, slot])),
+      ]);
+    });
+    this.#forgetDrafts();
   }
 
   async #keepCopy(job: Job): Promise<void> {
@@ -402,6 +453,8 @@ export class Session {
   }
 
   async #stateOf(rev: number): Promise<Job | null> {
+    const unsaved = this.#queue[rev - this.#nextRev];
+    if (unsaved !== undefined) return unsaved.job;
     const held = this.#memory.get(rev);
     if (held !== undefined) return held.job;
     const envelope = await this.#ctx.db.read(["revisions"], (tx) => tx.objectStore("revisions").get([this.id, rev]));
@@ -415,7 +468,6 @@ export class Session {
       const rev = this.#nextRev + i;
       const at = new Date().toISOString();
       history = item.move === 0 ? withStep(history, { rev, label: item.reason, at }) : withMove(history, item.move, rev);
-      this.#remember(rev, item.job);
     });
     return history;
   }
@@ -457,6 +509,10 @@ export class Session {
   #identity(): Stamp & { id: string } {
     return { ...this.#ctx.stamp(), id: this.id };
   }
+}
+
+function keptCopy(draft: DraftRecord): DraftRecord {
+  return { ...draft, slot: `kept ${draft.envelope.saved_at}` };
 }
 
 /** What a list of jobs shows. Nothing else in a job is looked at. */

@@ -109,7 +109,7 @@ export interface Pointer {
 
 export interface DraftRecord {
   id: string;
-  /** "now" for what is being typed; "kept …" for copies that were set aside. */
+  /** "now" for what is being typed; "left …" for the last words of a window that went away; "kept …" for copies set aside. */
   slot: string;
   envelope: Envelope<Job>;
 }
