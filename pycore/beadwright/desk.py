@@ -20,7 +20,7 @@ from .design.joint import judge
 from .field.face import at_the_face
 from .fields import GROUPS, Choice, Field, Reads
 from .job import blank, blank_row, compare, merge, open_bytes, to_bytes
-from .quantity import INCH, METRIC
+from .quantity import INCH, METRIC, sign_of
 from .sheet import joint_sheet, printed, schedule
 from .sheet.face_sheet import FACE_WORDS
 from .working import Issue
@@ -69,7 +69,7 @@ def _field(item: Field) -> dict[str, Any]:
         "label": item.label,
         "symbol": item.symbol,
         "kind": item.kind,
-        "units": {system: list(item.units_for(system)) for system in both},
+        "units": {system: [sign_of(unit) for unit in item.units_for(system)] for system in both},
         "default": per_system(item.default),
         "required": item.required,
         "choices": _choices(item),

@@ -88,7 +88,7 @@ KINDS: dict[str, Kind] = {
                 Unit("degF", "degF", ("degf", "°f", "f", "fahrenheit", "℉")),
             ),
             {METRIC: "degC", INCH: "degF"},
-            {METRIC: "34 degC or -12 °C", INCH: "94 degF or 10 °F"},
+            {METRIC: "34 °C or -12 °C", INCH: "94 °F or 10 °F"},
         ),
         Kind(
             "temperature_difference",
@@ -99,7 +99,7 @@ KINDS: dict[str, Kind] = {
                 Unit("degF", "delta_degF", ("degf", "°f", "f", "℉")),
             ),
             {METRIC: "K", INCH: "degF"},
-            {METRIC: "5 K", INCH: "9 degF"},
+            {METRIC: "5 K", INCH: "9 °F"},
         ),
         Kind(
             "expansion",
@@ -112,7 +112,7 @@ KINDS: dict[str, Kind] = {
                 Unit("e-6/degF", "1e-6/delta_degF", ("e-6/°f", "e-6/f", "ppm/degf", "ppm/f")),
             ),
             {METRIC: "e-6/K", INCH: "e-6/degF"},
-            {METRIC: "10.8 e-6/K", INCH: "6.0 e-6/degF"},
+            {METRIC: "10.8 × 10⁻⁶/K", INCH: "6.0 × 10⁻⁶/°F"},
         ),
         Kind(
             "percent",
@@ -143,7 +143,7 @@ KINDS: dict[str, Kind] = {
             "W/m**2",
             (
                 Unit("W/m2", "W/m**2", ("w/m2", "w/m²", "w/m^2")),
-                Unit("BTU/h/ft2", "BTU/hour/foot**2", ("btu/h/ft2", "btu/hr/ft2", "btu/h/ft²", "btu/(h·ft²)")),
+                Unit("BTU/h/ft2", "BTU/hour/foot**2", ("btu/h/ft2", "btu/hr/ft2", "btu/h/ft²", "btu/(h·ft²)", "btu/h·ft²")),
             ),
             {METRIC: "W/m2", INCH: "BTU/h/ft2"},
             {METRIC: "600 W/m2", INCH: "190 BTU/h/ft2"},
@@ -154,7 +154,7 @@ KINDS: dict[str, Kind] = {
             "W/m**2/delta_degC",
             (
                 Unit("W/m2K", "W/m**2/delta_degC", ("w/m2k", "w/m²k", "w/m2/k", "w/(m2k)", "w/(m²k)")),
-                Unit("BTU/h/ft2/degF", "BTU/hour/foot**2/delta_degF", ("btu/h/ft2/degf", "btu/h/ft2/f", "btu/hr/ft2/f", "btu/h/ft²/°f")),
+                Unit("BTU/h/ft2/degF", "BTU/hour/foot**2/delta_degF", ("btu/h/ft2/degf", "btu/h/ft2/f", "btu/hr/ft2/f", "btu/h/ft²/°f", "btu/h·ft²·°f")),
             ),
             {METRIC: "W/m2K", INCH: "BTU/h/ft2/degF"},
             {METRIC: "17 W/m2K", INCH: "3 BTU/h/ft2/degF"},

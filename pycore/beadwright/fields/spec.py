@@ -1,7 +1,7 @@
 """What an input is: its spec, and the builders that keep the declarations short.
 
 Hard limits refuse, soft limits warn with a reason; nothing is clipped and nothing is guessed.
-Limits are in core units (mm, degC, K, 1/K, fractions, h).
+Limits are in core units (mm, °C, K, 1/K, fractions, h).
 """
 
 from __future__ import annotations
@@ -93,7 +93,7 @@ FILM = {METRIC: ("W/m2K", "BTU/h/ft2/degF"), INCH: ("BTU/h/ft2/degF", "W/m2K")}
 
 EX_SMALL = {METRIC: "16 mm", INCH: "5/8 in"}
 EX_SPAN = {METRIC: "3.2 m", INCH: "12' 6 1/2\""}
-EX_TEMP = {METRIC: "34 degC", INCH: "94 degF"}
+EX_TEMP = {METRIC: "34 °C", INCH: "94 °F"}
 
 
 def length_field(key: str, label: str, **more: Any) -> Field:
