@@ -84,12 +84,18 @@ export function tableDrawers(app: App, tables: AnswerTable[], owner: string): Te
   return tables.map((item) => html`<section class="drawer">${disclosure(app, `table ${owner} ${item.key}`, item.title, () => table(item, false), false, true)}</section>`);
 }
 
+/** How sure the source is, where its own words do not say it already. */
+function statusOf({ source, status }: Step): TemplateResult | typeof nothing {
+  const isSaid = !status || status === "read" || (source ?? "").toLowerCase().includes(status.toLowerCase());
+  return isSaid ? nothing : html` <span class="status">${status}</span>`;
+}
+
 /** The working, as three columns of a calculation sheet: reference, calculation, result. */
 export function working(steps: Step[]): TemplateResult {
   return html`<ol class="working">
     ${steps.map(
       (step) => html`<li class="step" data-testid="step-${step.key}">
-        <p class="step-source">${step.source ?? ""}${step.status && step.status !== "read" ? html` <span class="status">${step.status}</span>` : nothing}</p>
+        <p class="step-source">${step.source ?? ""}${statusOf(step)}</p>
         <div class="step-lines">
           <p class="step-title">${step.title}</p>
           ${step.formula ? html`<p class="step-formula">${lettered(step.formula)}</p>` : nothing}

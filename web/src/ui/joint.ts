@@ -15,6 +15,7 @@ import { fieldId } from "./field";
 import { focusSoon, jumpTo } from "./focus";
 import { form } from "./form";
 import { issueList } from "./issues";
+import { titleStrip } from "./title_block";
 
 export function jointPage(app: App, forms: Forms, id: string): TemplateResult {
   const rows = getRows(app.job, "/joints");
@@ -25,7 +26,7 @@ export function jointPage(app: App, forms: Forms, id: string): TemplateResult {
   const answer = app.state.result?.evaluation.joints[id] ?? null;
   return html`<div class="page two is-joint">
     <div class="sheet">
-      ${jointHead(app, row, index, rows.length, answer)}
+      ${titleStrip(app)} ${jointHead(app, row, index, rows.length, answer)}
       ${issueList(app, (issue) => issue.path.startsWith(`${base}/`) && !issue.path.startsWith(`${base}/face`))}
       ${section(app, id, answer)} ${answer === null ? nothing : answersOf(app, answer, id)}
       ${app.state.coreFault !== null && answer !== null ? waiting(app) : nothing}

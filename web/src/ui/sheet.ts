@@ -10,7 +10,7 @@ import { href } from "../app/routes";
 import { bands, cautions, notes, smallVerdict, table, verdict, verdictOf, waiting, working } from "./answers";
 import { drawingOf } from "./drawing";
 import { lettered } from "./letters";
-import { titleBlock } from "./title_block";
+import { titleBlock, titleStrip } from "./title_block";
 
 const EXPORTS: readonly { kind: ExportKind; word: string }[] = [
   { kind: "job", word: "Job file" },
@@ -115,6 +115,7 @@ function jointSheet(app: App, forms: Forms, row: Row, index: number, answer: Joi
   const causes = getRows(row, "/causes");
   const drawing = drawingOf(answer?.drawing ?? "");
   return html`<section class="joint-sheet" data-testid="joint-sheet-${String(row["id"])}">
+    ${titleStrip(app)}
     <h2 class="joint-sheet-title"><span class="num">${index + 1}</span> ${rowNameOf(row, "Joint", index)}</h2>
     ${answer === undefined ? nothing : verdict(verdictOf(answer), app.state.isStale)} ${drawing === null ? nothing : html`<div class="drawing" role="img" aria-label="Section of ${answer?.name ?? "the joint"}">${drawing}</div>`}
     <div class="given">
