@@ -166,6 +166,7 @@ def _figures(judged: Judgement) -> dict[str, Any]:
         "strain": {
             "cold_average_fraction": judged.opened.average_fraction, "cold_face_fraction": judged.opened.face_fraction,
             "hot_average_fraction": judged.closed.average_fraction, "hot_face_fraction": judged.closed.face_fraction,
+            "curve": [] if movement.kind == "lap" else _curve(judged, _sealed_at(judged, "metric")[0], 9),
         },
         "window": {"from_c": judged.window.from_c, "to_c": judged.window.to_c, "low_limited_by": judged.window.low_limited_by, "high_limited_by": judged.window.high_limited_by},
     }  # fmt: skip
@@ -339,6 +340,8 @@ def _tables(judged: Judgement, system: str) -> list[dict[str, Any]]:
     if movement is None or widths is None:
         return []
     tables = [_causes_table(judged, system), _class_table(judged, system)]
+    if movement.kind != "lap":
+        tables.append(_range_table(judged, system))
     if judged.depth_others:
         tables.append(_rules_table(judged, system))
     return tables
@@ -366,6 +369,33 @@ def _class_table(judged: Judgement, system: str) -> dict[str, Any]:
     other = f" Under the other convention ({CONVENTION_WORDS[widths.other_convention]}) {sealant.class_label} would ask for {writing.up(widths.other_required_mm, system)}." if widths.other_required_mm is not None else ""
     return _table("classes", "Width at each class", ("Class", "Movement asks", "Design width", "At this width"), rows,
                   f"Convention: {CONVENTION_WORDS[judged.capability.convention]}. Classes of different conventions are never turned into each other.{other}")  # fmt: skip
+
+
+def _range_table(judged: Judgement, system: str) -> dict[str, Any]:
+    """Width and strain on the way from the coldest to the hottest, for paper, which has no scrubber."""
+    sealed, sealed_text = _sealed_at(judged, system)
+    rows = []
+    for point in _curve(judged, sealed, 5):
+        temperatures = " / ".join(writing.temperature(round(at, 1), system) for at in dict.fromkeys(point["element_c"]))
+        rows.append({"cells": [temperatures, writing.length(round(point["width_mm"], 1), system), writing.percent(point["average_fraction"], signed=True), writing.percent(point["face_fraction"], signed=True)], "mark": None})
+    return _table("range", "From the coldest to the hottest", ("Elements, A / B", "Width", "Average strain", "Strain at the face"), rows,
+                  f"Temperature movement only, sealed at {sealed_text}.")  # fmt: skip
+
+
+def _curve(judged: Judgement, sealed: float, count: int) -> list[dict[str, Any]]:
+    """Width and strain at even steps from the coldest to the hottest, sealed at a share of that way."""
+    bead = judged.bead
+    assert bead is not None
+    swing = sum(item.rate_mm_per_k * (item.hot_c - item.cold_c) for item in judged.elements)
+    points = []
+    for index in range(count):
+        fraction = index / (count - 1)
+        state = strained(bead, swing * (sealed - fraction))
+        points.append({
+            "fraction": fraction, "element_c": [item.cold_c + fraction * (item.hot_c - item.cold_c) for item in judged.elements],
+            "width_mm": bead.width_mm + state.change_mm, "average_fraction": state.average_fraction, "face_fraction": state.face_fraction,
+        })  # fmt: skip
+    return points
 
 
 def _rules_table(judged: Judgement, system: str) -> dict[str, Any]:
