@@ -263,3 +263,46 @@ def test_a_second_job_with_the_same_id_is_refused(page):
     got = page.evaluate("async () => [await bw.outcome(() => store.create(bw.job('a', 'other'))), (await store.open('a')).job.edit]")
     assert got[0]["code"] == "exists"
     assert got[1] == "saved"
+
+
+# ---- opening and closing at awkward moments ----------------------------------------------------------------------
+
+
+def test_opening_an_open_job_again_does_not_lose_what_is_being_typed(page):
+    got = page.evaluate(
+        """async () => { store.change("a", bw.job("a", "typed before")); const one = await store.open("a");
+        const opening = store.open("a"); store.change("a", bw.job("a", "typed during")); await opening;
+        const three = await store.takeOver("a"); await store.flush();
+        return [one.job.edit, three.job.edit, (await bw.dump()).drafts[0].envelope.payload.edit]; }"""
+    )
+    assert got == ["typed before", "typed during", "typed during"]
+
+
+def test_a_load_that_is_overtaken_by_typing_does_not_put_the_old_job_back(page):
+    got = page.evaluate(
+        """async () => { const opening = store.open("a"); store.change("a", bw.job("a", "typed during")); const two = await opening;
+        await store.flush(); return [two.job.edit, (await bw.dump()).drafts[0].envelope.payload.edit]; }"""
+    )
+    assert got == ["typed during", "typed during"]
+
+
+def test_a_job_that_cannot_be_saved_cannot_be_put_away(page):
+    got = page.evaluate(
+        """async () => { bw.hooks.onTransaction = (names, mode) => { if (mode === "readwrite") throw new DOMException("gone", "InvalidStateError"); };
+        void store.commit("a", bw.job("a", "unsaved")).catch(() => undefined);
+        const removed = await bw.outcome(() => store.remove("a")); const closed = await bw.outcome(() => store.close("a"));
+        bw.hooks.onTransaction = null; await store.flush();
+        return [removed.ok, closed.ok, (await bw.dump()).revisions.at(-1).payload.edit, (await store.list()).length]; }"""
+    )
+    assert got == [False, False, "unsaved", 1]
+
+
+def test_a_start_without_storage_says_why(new_page):
+    got = new_page().evaluate(
+        """async () => { IDBFactory.prototype.open = () => { throw new DOMException("no", "UnknownError"); };
+        const store = await bw.open(); return [store.startProblem, await bw.outcome(() => store.list())]; }"""
+    )
+    assert "cannot be reached" in got[0]
+    assert got[1]["code"] == "failed"
+    assert "cannot be reached" in got[1]["message"]
+    assert "not saved" not in got[1]["message"].lower()

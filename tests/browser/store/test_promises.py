@@ -51,10 +51,10 @@ def test_promise_1_a_write_that_is_cut_off_leaves_the_old_revision_whole(page):
               if (this.transaction.mode === "readwrite" && count++ === nth) { cut = true; this.transaction.abort(); }
               return request;
             };
-            // The retry is cut off too.
-            const again = setInterval(() => { count = 0; }, 0);
+            // The second try is cut off at the same place.
+            bw.hooks.onTransaction = () => { count = 0; };
             const got = await bw.outcome(() => store.commit("a", bw.job("a", "new " + method + nth)));
-            clearInterval(again);
+            bw.hooks.onTransaction = null;
             proto.prototype[method] = kept;
             if (!cut) continue;
             const dump = await bw.dump();
@@ -65,7 +65,8 @@ def test_promise_1_a_write_that_is_cut_off_leaves_the_old_revision_whole(page):
         }
         return seen; }"""
     )
-    assert {row["at"] for row in result} == {"put0", "put1", "put2", "get0", "get1", "get2", "delete0", "delete1"}
+    # Edits that failed stay queued, so later writes have more puts still.
+    assert {row["at"] for row in result} >= {"put0", "put1", "put2", "get0", "get1", "get2", "delete0", "delete1"}
     for row in result:
         assert row["sound"] and row["notes"] == 1, row
     assert not all(row["ok"] for row in result), "no write was really cut off"

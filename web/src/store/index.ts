@@ -80,7 +80,10 @@ export class Store extends EventTarget {
         this.#hurry();
         this.#stop(TEXT.newerApp);
       },
-      onBlocked: () => this.#emit("notice", { id: null, text: TEXT.blocked }),
+      onBlocked: () => {
+        this.startProblem = TEXT.blocked;
+        this.#emit("notice", { id: null, text: TEXT.blocked });
+      },
     });
     this.#channel = new Channel(name);
     this.#channel.listen((message) => this.#hear(message));
@@ -104,8 +107,9 @@ export class Store extends EventTarget {
       if (mended.length > 0) store.#emit("jobs", { id: null, rev: null, isOther: false });
     } catch (error) {
       const { code, message } = toStoreError(error);
-      if (code === "newer-app") store.#stopped = TEXT.newerApp;
-      store.startProblem = code === "newer-app" ? TEXT.newerApp : code === "no-storage" ? TEXT.noStorage : message;
+      if (code === "newer-app") store.#stopped = store.startProblem = TEXT.newerApp;
+      if (code === "no-storage") store.startProblem = TEXT.noStorage;
+      store.startProblem ??= code === "failed" ? TEXT.unreachable : message;
     }
     return store;
   }
@@ -137,7 +141,7 @@ export class Store extends EventTarget {
       return await this.#load(id, isWriter);
     } catch (error) {
       if (isWriter && !this.#sessions.has(id)) this.#locks.release(id);
-      throw toStoreError(error);
+      return cannotRead(error);
     }
   }
 
@@ -196,8 +200,9 @@ export class Store extends EventTarget {
   /** Become the writer; the other window writes its last edits and reads from then on. */
   async takeOver(id: string): Promise<OpenResult> {
     if (this.#stopped !== null) throw new StoreError("newer-app", this.#stopped);
+    const mine = this.#sessions.get(id);
+    if (mine?.isLoaded && mine.isWriter && mine.readOnly === null) return this.#result(mine, null, null);
     await this.#locks.takeOver(id);
-    this.#sessions.delete(id);
     const result = await this.#load(id, true);
     // Should the write fail, the other window is still refused as soon as this one has saved something.
     await this.#session(id).claim().catch(() => undefined);
@@ -276,7 +281,8 @@ export class Store extends EventTarget {
   // ---- the bin ------------------------------------------------------------------------------------------------
 
   async remove(id: string): Promise<void> {
-    await this.close(id).catch(() => undefined);
+    // What cannot be saved cannot be put away either: it would be lost when the page ends.
+    await this.close(id);
     if (!(await this.#locks.tryTake(id))) throw new StoreError("read-only", TEXT.otherWindow);
     try {
       await this.#changePointer(id, (pointer) => ({ ...pointer, removed_at: new Date().toISOString() }));
@@ -474,7 +480,10 @@ export class Store extends EventTarget {
     if (!isWriter) session.readOnly ??= { code: "other-window", reason: TEXT.otherWindow };
     session.begin(reading.pointer, reading.job, reading.drafts, reading.history);
     session.skipTo(reading.highestRev);
-    this.#sessions.get(id)?.stop();
+    const before = this.#sessions.get(id);
+    // Something was typed while this load was under way: the screen is right, the load is late.
+    if (before?.isLoaded && before.isWriter && before.readOnly === null && before.hasUnsaved) return this.#result(before, null, null);
+    before?.stop();
     this.#sessions.set(id, session);
     if (session.readOnly === null && reading.faulty.length > 0) {
       await setAside(this.#db, id, reading);
@@ -497,7 +506,7 @@ export class Store extends EventTarget {
   }
 
   async #pointers(): Promise<Pointer[]> {
-    const pointers = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").getAll());
+    const pointers = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").getAll()).catch(cannotRead);
     return pointers.filter(isSoundPointer).sort((a, b) => b.saved_at.localeCompare(a.saved_at));
   }
 
@@ -610,4 +619,9 @@ export class Store extends EventTarget {
   #emit<K extends keyof StoreEvents>(type: K, detail: StoreEvents[K]): void {
     this.dispatchEvent(new CustomEvent(type, { detail }));
   }
+}
+
+/** A failed reading says so in words of its own: nothing has been lost. */
+function cannotRead(error: unknown): never {
+  throw error instanceof StoreError ? error : new StoreError("failed", TEXT.unreachable, error);
 }

@@ -45,6 +45,7 @@ export interface SessionContext {
 
 interface Waiting {
   job: Job;
+  chars: number;
   reason: string;
   move: -1 | 0 | 1;
   pin: boolean;
@@ -97,7 +98,7 @@ export class Session {
       // The list ends elsewhere than the job (an older app, a repair): begin a new one here.
       this.history = withStep(this.history, { rev: pointer.rev, label: "Opened", at: pointer.saved_at });
     }
-    if (pointer !== null) this.#remember(pointer.rev, job);
+    if (pointer !== null) this.#remember(pointer.rev, job, pointer.revisions.find((mark) => mark.rev === pointer.rev)?.size ?? 0);
     this.isLoaded = true;
   }
 
@@ -172,19 +173,20 @@ export class Session {
     if (!this.isLoaded) return Promise.reject(new StoreError("not-open", "The job is not open yet."));
     if (this.readOnly !== null) return Promise.reject(new StoreError("read-only", this.readOnly.reason));
     if (job.id !== this.id) return Promise.reject(new StoreError("refused", "The job has another id than the one that is open."));
-    let copy: Job;
+    let text: string;
     try {
-      copy = jsonCopy(job);
+      text = JSON.stringify(job);
     } catch (error) {
       return Promise.reject(new StoreError("refused", "The job holds something that cannot be written as JSON.", error));
     }
+    const copy = JSON.parse(text) as Job;
     clearTimeout(this.#draftTimer);
     this.#typed = null;
     this.#draftAt = null;
     this.latest = copy;
     return new Promise((resolve, reject) => {
       const { move = 0, pin = false } = options;
-      this.#queue.push({ job: copy, reason, move, pin, envelope: null, settle: { resolve, reject } });
+      this.#queue.push({ job: copy, chars: text.length, reason, move, pin, envelope: null, settle: { resolve, reject } });
       void this.#pump();
       this.#ctx.onState(this);
     });
@@ -309,7 +311,7 @@ export class Session {
         this.#forgetDrafts();
         this.#isClaimed = true;
         this.#recover();
-        for (const item of batch) this.#remember(item.envelope!.rev, item.job);
+        for (const item of batch) this.#remember(item.envelope!.rev, item.job, item.chars);
         this.#ctx.onState(this);
         this.#ctx.onSaved(this);
         for (const item of batch) item.settle?.resolve();
@@ -341,7 +343,7 @@ export class Session {
       }
       const at = item.envelope.saved_at;
       history = item.move === 0 ? withStep(history, { rev, label: item.reason, at }) : withMove(history, item.move, rev);
-      marks.push({ rev, saved_at: at, reason: item.reason, size: JSON.stringify(item.job).length, pinned: item.pin, exported: false });
+      marks.push({ rev, saved_at: at, reason: item.reason, size: item.chars, pinned: item.pin, exported: false });
       parent = rev;
     });
     const newest = batch[batch.length - 1]!;
@@ -472,9 +474,8 @@ export class Session {
     return history;
   }
 
-  #remember(rev: number, job: Job): void {
-    if (this.#memory.has(rev)) this.#memoryChars -= this.#memory.get(rev)!.chars;
-    const chars = JSON.stringify(job).length;
+  #remember(rev: number, job: Job, chars: number): void {
+    this.#memoryChars -= this.#memory.get(rev)?.chars ?? 0;
     this.#memory.set(rev, { job, chars });
     this.#memoryChars += chars;
     for (const [oldest, { chars: size }] of this.#memory) {

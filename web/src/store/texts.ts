@@ -56,6 +56,7 @@ export const TEXT = {
   full: "Not saved: this tablet has no space left. Your work is still on screen. Export it now, then free some space.",
   failed: "Not saved: the browser's storage does not answer. Your work is still on screen. Export it now.",
   noStorage: "Not saved: this browser keeps nothing. Your work is only on screen. Export it before you close the page.",
+  unreachable: "The jobs kept on this tablet cannot be reached: the browser's storage does not answer. Load the page again.",
   takenOver: "Another window has taken over this job. This window only reads it now.",
   otherWindow: "This job is open in another window. You can read it here, or take over.",
   fenced: "Not saved: another window has changed this job. What you typed here is kept as a copy.",
