@@ -285,3 +285,6 @@ self.onmessage = (event: MessageEvent<ToWorker>) => {
   if (event.data.type === "start") void start(event.data);
   else answer(event.data);
 };
+
+// In a developer build the console may look inside: self.pyodideForDevelopers().runPython("…").
+if (__DEVELOPER__) Object.assign(self, { pyodideForDevelopers: () => pyodide });
