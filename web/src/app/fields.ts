@@ -1,7 +1,7 @@
 // Reading the field declarations: which fields show, what they offer, which unit a bare number takes.
 
 import type { Choice, FieldGroup, FieldSpec, Forms, Row, UnitSystem } from "./contract";
-import { get, getRow, getRows, isRow } from "./pointer";
+import { get, getRow, getRows } from "./pointer";
 
 export function groupOf(forms: Forms, key: string): FieldGroup {
   const found = forms.groups.find((group) => group.key === key);
@@ -86,20 +86,18 @@ export function choicesOf(spec: FieldSpec, forms: Forms, group: FieldGroup, job:
   return spec.choices ?? [];
 }
 
-/** How the core prints a unit: `°C` for a label such as `degC`. */
-export function signOf(forms: Forms | null, unit: string): string {
-  const signs = forms?.words["unit_signs"];
-  const sign = isRow(signs) ? signs[unit] : undefined;
-  return typeof sign === "string" ? sign : unit;
-}
-
 const UNIT_SIGNS = /[\p{L}'"°%′″’”‰]/u;
 
 /** What people type, with the unit of the chip put after a number that has none. */
 export function withUnit(text: string, unit: string | null): string {
   const typed = text.trim();
-  if (unit === null || typed === "" || UNIT_SIGNS.test(typed)) return text;
+  if (unit === null || typed === "" || hasUnit(typed)) return text;
   return `${typed} ${unit}`;
+}
+
+/** Whether a text says its own unit, be it one of those offered or not. */
+export function hasUnit(text: string): boolean {
+  return UNIT_SIGNS.test(text);
 }
 
 /** The unit that a text already ends with, if it is one of those offered. */

@@ -123,6 +123,8 @@ export function notes(items: { severity: string; text: string }[]): TemplateResu
   </ul>`;
 }
 
+/** So few notes are quicker to read than to open. */
+const FEW_NOTES = 2;
 const CAUTION_WORDS = { stop: "Stop", warning: "Take care", note: "Note" } as const;
 
 export function cautions(app: App, items: Caution[], withJoints: boolean): TemplateResult | typeof nothing {
@@ -141,10 +143,20 @@ export function cautions(app: App, items: Caution[], withJoints: boolean): Templ
   </ul>`;
 }
 
+/** What stops or warns stands open; plain notes wait behind their number, and are printed all the same. */
+export function cautionsPart(app: App, items: Caution[], name: string, withJoints: boolean): TemplateResult {
+  const notes = items.filter((item) => item.severity === "note");
+  const pressing = items.filter((item) => item.severity !== "note");
+  if (notes.length <= FEW_NOTES) return html`${cautions(app, items, withJoints)}`;
+  return html`${cautions(app, pressing, withJoints)}
+  ${disclosure(app, `notes ${name}`, `${notes.length}${pressing.length > 0 ? " more" : ""} notes`, () => cautions(app, notes, withJoints), false, true)}`;
+}
+
 function jointsOf(app: App, item: Caution): TemplateResult | typeof nothing {
   const joints = app.state.result?.evaluation.joints ?? {};
   const named = (item.joints ?? []).filter((id) => joints[id] !== undefined);
   if (named.length === 0) return nothing;
+  if (named.length === Object.keys(joints).length && named.length > 1) return html`<p class="source">All joints</p>`;
   return html`<p class="source">
     Joints:
     ${named.map((id, at) => html`${at > 0 ? ", " : ""}<a href=${href({ page: "joint", job: app.open.id, joint: id })}>${joints[id]!.name}</a>`)}

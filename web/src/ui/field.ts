@@ -3,10 +3,10 @@
 import { html, nothing, type TemplateResult } from "lit";
 import type { App } from "../app/app";
 import type { FieldGroup, FieldSpec, Forms, Issue } from "../app/contract";
-import { choicesOf, forSystem, signOf, systemOf, tellingReading, unitIn, unitsOf, valueAt } from "../app/fields";
+import { choicesOf, forSystem, hasUnit, systemOf, tellingReading, unitIn, unitsOf, valueAt } from "../app/fields";
 import { get, join } from "../app/pointer";
 import { lettered } from "./letters";
-import { isGrouped, widgetFor, type Place } from "./widgets";
+import { chipOf, isGrouped, widgetFor, type Place } from "./widgets";
 
 /** Before every message a word, so that its weight does not hang on colour. */
 const SEVERITY_WORDS = { error: "Fix", warning: "Check", note: "Note" } as const;
@@ -23,7 +23,7 @@ export function field(app: App, forms: Forms, group: FieldGroup, spec: FieldSpec
   const reading = readingAt(app, pointer);
   const text = valueAt(app.job, pointer);
   const help = helpText(spec, app, text);
-  const units = unitsOf(spec, systemOf(app.job)).map((unit) => signOf(forms, unit));
+  const units = unitsOf(spec, systemOf(app.job));
   const place: Place = {
     spec,
     pointer,
@@ -31,7 +31,7 @@ export function field(app: App, forms: Forms, group: FieldGroup, spec: FieldSpec
     text,
     raw: get(app.job, pointer),
     units,
-    unit: unitIn(text, units) ?? app.state.chips[pointer] ?? units[0] ?? null,
+    unit: hasUnit(text) ? unitIn(text, units) : chipOf(app, pointer, units),
     choices: choicesOf(spec, forms, group, app.job, base),
     example: forSystem(spec.example, systemOf(app.job)) ?? "",
     fallback: forSystem(spec.default, systemOf(app.job)),

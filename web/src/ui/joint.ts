@@ -9,7 +9,7 @@ import { addRow, changeJob, newId, removeRow } from "../app/editing";
 import { blankRow, groupOf, systemOf } from "../app/fields";
 import { getRow, getRows, rowNameOf } from "../app/pointer";
 import { href } from "../app/routes";
-import { bands, cautions, notes, tableDrawers, verdict, verdictOf, waiting, workingPart } from "./answers";
+import { bands, cautionsPart, notes, tableDrawers, verdict, verdictOf, waiting, workingPart } from "./answers";
 import { drawingOf } from "./drawing";
 import { fieldId } from "./field";
 import { focusSoon, jumpTo } from "./focus";
@@ -120,7 +120,7 @@ function answersOf(app: App, answer: JointAnswer, id: string): TemplateResult {
   return html`
     ${answer.answers && answer.answers.length > 0 ? html`<section aria-label="Answers" class=${app.state.isStale ? "is-stale" : ""}>${bands(answer.answers)}</section>` : nothing}
     ${notes(answer.notes ?? [])}
-    ${own.length > 0 ? html`<section class="part" aria-labelledby="own-cautions"><h2 id="own-cautions">Take care</h2>${cautions(app, own, false)}</section>` : nothing}
+    ${own.length > 0 ? html`<section class="part" aria-labelledby="own-cautions"><h2 id="own-cautions">Take care</h2>${cautionsPart(app, own, id, false)}</section>` : nothing}
     <div class="drawers">${tableDrawers(app, answer.tables ?? [], id)} ${workingPart(app, answer.steps ?? [], `working ${id}`)}</div>
     <div class="actions part">
       <a class="button" href=${href({ page: "sheet", job: app.open.id, joint: id })}>Sheet of this joint</a>

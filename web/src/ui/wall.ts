@@ -10,7 +10,7 @@ import { exportFile } from "../app/files";
 import { go } from "../app/jobs";
 import { getRows, rowNameOf, split } from "../app/pointer";
 import { href } from "../app/routes";
-import { cautions, smallVerdict, staleNote, waiting } from "./answers";
+import { cautionsPart, smallVerdict, staleNote, waiting } from "./answers";
 import { fieldId } from "./field";
 import { focusSoon, jumpTo } from "./focus";
 import { disclosure, form, openParts } from "./form";
@@ -48,7 +48,7 @@ export function wallPage(app: App, forms: Forms): TemplateResult {
       ${result && result.evaluation.cautions.length > 0
         ? html`<section class="part" aria-labelledby="cautions-title">
             <h2 id="cautions-title">Take care</h2>
-            ${cautions(app, result.evaluation.cautions, true)}
+            ${cautionsPart(app, result.evaluation.cautions, "of the job", true)}
           </section>`
         : nothing}
     </div>

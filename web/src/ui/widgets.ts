@@ -72,7 +72,8 @@ export function isGrouped(place: Place): boolean {
 
 function keyboardFor(place: Place): "text" | "decimal" | "numeric" {
   if (place.spec.kind === "count") return "numeric";
-  if (place.spec.kind === "text") return "text";
+  // A telephone's digit pad has no minus.
+  if (place.spec.kind === "text" || place.spec.kind === "temperature") return "text";
   // Digits alone will do where the example has nothing else before its unit; fractions and feet need more keys.
   return /^[\d.,]+(\s|$)/.test(place.example) && !/[/'"−-]/.test(place.example) ? "decimal" : "text";
 }
@@ -83,7 +84,20 @@ function onEnter(app: App, place: Place): (event: KeyboardEvent) => void {
   };
 }
 
-function input(app: App, place: Place, unit: string | null): TemplateResult {
+/** The unit that a bare number takes in this place. */
+export function chipOf(app: App, pointer: string, units: string[]): string | null {
+  return app.state.chips[pointer] ?? units[0] ?? null;
+}
+
+/** Typing; the unit that stood there last is the one that a bare number takes next. */
+function type(app: App, place: Place, text: string): void {
+  const { pointer, units } = place;
+  const standing = unitIn(text, units) ?? unitIn(place.text, units);
+  if (standing !== null && standing !== app.state.chips[pointer]) app.update({ chips: { ...app.state.chips, [pointer]: standing } });
+  typeInto(app, pointer, text, chipOf(app, pointer, units));
+}
+
+function input(app: App, place: Place): TemplateResult {
   return html`<input
     id=${place.id}
     type="text"
@@ -98,14 +112,14 @@ function input(app: App, place: Place, unit: string | null): TemplateResult {
     aria-invalid=${place.isBad ? "true" : nothing}
     aria-required=${place.spec.required ? "true" : nothing}
     aria-describedby=${place.describedBy || nothing}
-    @input=${(event: InputEvent) => typeInto(app, place.pointer, (event.target as HTMLInputElement).value, unit)}
+    @input=${(event: InputEvent) => type(app, place, (event.target as HTMLInputElement).value)}
     @blur=${() => commitPending(app, place.spec.label)}
     @keydown=${onEnter(app, place)}
   />`;
 }
 
 function textWidget(app: App, place: Place): TemplateResult {
-  return input(app, place, null);
+  return input(app, place);
 }
 
 function noteWidget(app: App, place: Place): TemplateResult {
@@ -123,14 +137,14 @@ function noteWidget(app: App, place: Place): TemplateResult {
 }
 
 function dateWidget(app: App, place: Place): TemplateResult {
-  return html`${input(app, place, null)}
+  return html`${input(app, place)}
   ${place.isReadOnly
     ? nothing
     : html`<button type="button" class="chip" @click=${() => choose(app, place.pointer, today(), place.spec.label)}>Today</button>`}`;
 }
 
 function quantityWidget(app: App, place: Place): TemplateResult {
-  return html`${input(app, place, place.unit)}${unitChips(app, place)}`;
+  return html`${input(app, place)}${unitChips(app, place)}`;
 }
 
 function unitChips(app: App, place: Place): TemplateResult | typeof nothing {
