@@ -2,7 +2,7 @@
 
 Unit definitions are pint's, taken once as exact fractions; everything afterwards is exact
 rational arithmetic until the single conversion to float at the border of the core. Core
-units: mm, degC (readings), K (differences), 1/K, h, W/m2, W/m2K; fractions are 0 to 1.
+units: mm, degC (readings), K (differences), 1/K, h, W/m2, W/m2K, ml, m2/l, m/h; fractions are 0 to 1.
 
 A typed text is never changed: `parse` returns it beside its value.
 """
@@ -159,6 +159,45 @@ KINDS: dict[str, Kind] = {
             {METRIC: "W/m2K", INCH: "BTU/h/ft2/degF"},
             {METRIC: "17 W/m2K", INCH: "3 BTU/h/ft2/degF"},
         ),
+        Kind(
+            "volume",
+            "a volume",
+            "milliliter",
+            (
+                Unit("ml", "milliliter", ("ml", "millilitre", "millilitres", "milliliter", "milliliters", "cc", "cm3", "cm^3")),
+                Unit("l", "liter", ("l", "litre", "litres", "liter", "liters", "ltr", "dm3")),
+                Unit("US fl oz", "US_fluid_ounce", ("usfloz", "floz", "fluidounce", "fluidounces", "oz")),
+                Unit("US qt", "US_liquid_quart", ("usqt", "qt", "quart", "quarts")),
+                Unit("US gal", "US_liquid_gallon", ("usgal", "gal", "gallon", "gallons", "usgallon", "usgallons")),
+                Unit("imp fl oz", "imperial_fluid_ounce", ("impfloz",)),
+                Unit("imp gal", "imperial_gallon", ("impgal", "imperialgallon", "imperialgallons")),
+                Unit("in3", "inch**3", ("in3", "in^3", "cuin", "cubicinch", "cubicinches")),
+            ),
+            {METRIC: "l", INCH: "US gal"},
+            {METRIC: "300 ml or 20 l", INCH: "10.1 fl oz or 1.5 gal"},
+        ),
+        Kind(
+            "coverage",
+            "a coverage",
+            "meter**2/liter",
+            (
+                Unit("m2/l", "meter**2/liter", ("m2/l", "m^2/l", "m2perl", "m2/litre", "m2/liter")),
+                Unit("ft2/gal", "foot**2/US_liquid_gallon", ("ft2/gal", "ft^2/gal", "sqft/gal", "ft2/usgal", "sf/gal")),
+            ),
+            {METRIC: "m2/l", INCH: "ft2/gal"},
+            {METRIC: "12 m2/l", INCH: "490 ft2/gal"},
+        ),
+        Kind(
+            "pace",
+            "a length done in an hour",
+            "meter/hour",
+            (
+                Unit("m/h", "meter/hour", ("m/h", "m/hr", "mperh", "m/hour")),
+                Unit("ft/h", "foot/hour", ("ft/h", "ft/hr", "lf/h", "lf/hr", "ftperh", "ft/hour")),
+            ),
+            {METRIC: "m/h", INCH: "ft/h"},
+            {METRIC: "8 m/h", INCH: "25 ft/h"},
+        ),
     )
 }
 
@@ -227,7 +266,7 @@ def unit_of(kind: str, label: str) -> Unit:
 
 def _fold(text: str) -> str:
     """Spelling of a unit without the differences that do not matter."""
-    return _SPACES.sub("", text.strip().lower()).replace("²", "2").replace("·", "").replace("º", "°").rstrip(".")
+    return _SPACES.sub("", text.strip().lower()).replace("²", "2").replace("³", "3").replace("·", "").replace("º", "°").rstrip(".")
 
 
 def to_core(kind: str, number: Fraction, unit: str) -> Fraction:
@@ -421,6 +460,7 @@ def _unit_label(spelling: str, kind: str, typed: str, system: str) -> str:
 _UNIT_SIGN = {
     "degC": "°C", "degF": "°F", "e-6/K": "× 10⁻⁶/K", "e-6/degF": "× 10⁻⁶/°F", "1/K": "/K", "1/degF": "/°F",
     "W/m2": "W/m²", "W/m2K": "W/m²K", "BTU/h/ft2": "BTU/h·ft²", "BTU/h/ft2/degF": "BTU/h·ft²·°F",
+    "m2/l": "m²/l", "ft2/gal": "ft²/gal", "in3": "in³",
 }  # fmt: skip
 _DECIMALS = {
     ("length", "mm"): 1, ("length", "m"): 3, ("length", "in"): 3, ("length", "ft"): 2, ("length", "cm"): 2,
@@ -429,6 +469,8 @@ _DECIMALS = {
     ("expansion", "e-6/K"): 2, ("expansion", "e-6/degF"): 2, ("percent", "%"): 2, ("percent", "mm/m"): 3,
     ("duration", "h"): 1, ("duration", "d"): 1, ("duration", "min"): 0,
     ("irradiance", "W/m2"): 0, ("irradiance", "BTU/h/ft2"): 1, ("film", "W/m2K"): 1, ("film", "BTU/h/ft2/degF"): 2,
+    ("volume", "ml"): 1, ("volume", "l"): 2, ("volume", "US fl oz"): 2, ("volume", "US gal"): 2, ("volume", "US qt"): 2,
+    ("coverage", "m2/l"): 2, ("coverage", "ft2/gal"): 0, ("pace", "m/h"): 2, ("pace", "ft/h"): 1,
 }  # fmt: skip
 
 

@@ -127,6 +127,16 @@ def _read_number(item: Field, raw: object, path: str, reads: Reads, tables: Tabl
     return value if _within(item, value, path, reads, label, lambda v: quantity.plain(v, 3), "") else None
 
 
+def _read_count(item: Field, raw: object, path: str, reads: Reads, tables: Tables, label: str) -> int | None:
+    value = _read_number(item, raw, path, reads, tables, label)
+    if value is None:
+        return None
+    if not value.is_integer():
+        _refuse(reads, path, "not-whole", f"{_name(item, label)} must be a whole number.", raw)
+        return None
+    return int(value)
+
+
 def _read_quantity(item: Field, raw: object, path: str, reads: Reads, tables: Tables, label: str) -> float | None:
     if isinstance(raw, bool) or not isinstance(raw, (str, int, float)):
         expected = item.example if isinstance(item.example, str) else item.example[reads.system]
@@ -147,7 +157,8 @@ def _read_quantity(item: Field, raw: object, path: str, reads: Reads, tables: Ta
 
 
 _CORE_UNIT = {"length": "mm", "temperature": "degC", "temperature_difference": "K", "expansion": "1/K", "percent": "fraction",
-              "duration": "h", "irradiance": "W/m2", "film": "W/m2K"}  # fmt: skip
+              "duration": "h", "irradiance": "W/m2", "film": "W/m2K",
+              "volume": "ml", "coverage": "m2/l", "pace": "m/h"}  # fmt: skip
 
 
 @lru_cache(maxsize=4096)
@@ -169,6 +180,9 @@ _OTHER = {
     ("expansion", "e-6/degF"): "e-6/K", ("expansion", "1/degF"): "e-6/K",
     ("irradiance", "W/m2"): "BTU/h/ft2", ("irradiance", "BTU/h/ft2"): "W/m2",
     ("film", "W/m2K"): "BTU/h/ft2/degF", ("film", "BTU/h/ft2/degF"): "W/m2K",
+    ("volume", "ml"): "US fl oz", ("volume", "l"): "US gal", ("volume", "US fl oz"): "ml", ("volume", "US qt"): "l", ("volume", "US gal"): "l",
+    ("volume", "imp fl oz"): "ml", ("volume", "imp gal"): "l", ("volume", "in3"): "ml",
+    ("coverage", "m2/l"): "ft2/gal", ("coverage", "ft2/gal"): "m2/l", ("pace", "m/h"): "ft/h", ("pace", "ft/h"): "m/h",
 }  # fmt: skip
 
 
@@ -198,4 +212,5 @@ _READERS: dict[str, Callable[..., Any]] = {
     "choice": _read_choice,
     "reference": _read_choice,
     "number": _read_number,
+    "count": _read_count,
 }

@@ -89,6 +89,10 @@ PERCENT = {METRIC: ("%",), INCH: ("%",)}
 STRAIN = {METRIC: ("%", "mm/m"), INCH: ("%", "mm/m")}
 DURATION = {METRIC: ("h", "d", "min"), INCH: ("h", "d", "min")}
 SUN = {METRIC: ("W/m2", "BTU/h/ft2"), INCH: ("BTU/h/ft2", "W/m2")}
+VOLUME = {METRIC: ("ml", "l", "US fl oz", "US gal"), INCH: ("US fl oz", "US gal", "ml", "l")}
+BULK = {METRIC: ("l", "US gal"), INCH: ("US gal", "l")}
+COVERAGE = {METRIC: ("m2/l", "ft2/gal"), INCH: ("ft2/gal", "m2/l")}
+PACE = {METRIC: ("m/h", "ft/h"), INCH: ("ft/h", "m/h")}
 FILM = {METRIC: ("W/m2K", "BTU/h/ft2/degF"), INCH: ("BTU/h/ft2/degF", "W/m2K")}
 
 EX_SMALL = {METRIC: "16 mm", INCH: "5/8 in"}

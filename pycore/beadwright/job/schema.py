@@ -23,7 +23,7 @@ def _of_field(item: Field) -> dict[str, Any]:
         return about | {"type": "boolean"}
     if item.choices:
         return about | {"type": "string", "enum": ["", *(choice.value for choice in item.choices)]}
-    if item.kind == "number":
+    if item.kind in ("number", "count"):
         return about | {"type": ["string", "number"]}
     if item.units:
         return about | {"type": "string", "maxLength": MAX_TEXT, "examples": sorted({item.example} if isinstance(item.example, str) else set(item.example.values()))}
