@@ -1,19 +1,18 @@
 // The door of the store. See types.ts for what goes through it.
 
 import { writeBackup, readBackup } from "./backup";
-import { Database, isQuotaFault, together } from "./db";
-import { findFault, jsonCopy } from "./envelope";
+import { Database, isQuotaFault } from "./db";
+import { jsonCopy } from "./envelope";
 import { askPersistence, gatherFacts } from "./facts";
-import { DATABASE_VERSION, migratePayload, MIGRATIONS, RECORD_SCHEMA } from "./migrations";
+import { DATABASE_VERSION, MIGRATIONS, RECORD_SCHEMA } from "./migrations";
 import * as photos from "./photos";
-import { isSoundPointer, mendPointers, readJob, setAside, type Rules } from "./reading";
+import { mendPointers, readJob, setAside, type Rules } from "./reading";
 import { Session, toStoreError, type SessionContext, type Stamp } from "./session";
 import { TEXT } from "./texts";
 import {
   StoreError,
   type Clash,
   type ClashChoice,
-  type Envelope,
   type HistoryState,
   type Job,
   type JobSummary,
@@ -28,6 +27,7 @@ import {
   type StoreFacts,
   type StoreOptions,
 } from "./types";
+import * as shelf from "./shelf";
 import { Channel, WriterLocks, type Message } from "./writer";
 
 export type * from "./types";
@@ -123,11 +123,11 @@ export class Store extends EventTarget {
   // ---- jobs ---------------------------------------------------------------------------------------------------
 
   async list(): Promise<JobSummary[]> {
-    return (await this.#pointers()).filter((pointer) => pointer.removed_at === null).map((p) => this.#summary(p));
+    return (await shelf.pointers(this.#db)).filter((pointer) => pointer.removed_at === null).map((p) => this.#summary(p));
   }
 
   async bin(): Promise<JobSummary[]> {
-    return (await this.#pointers()).filter((pointer) => pointer.removed_at !== null).map((p) => this.#summary(p));
+    return (await shelf.pointers(this.#db)).filter((pointer) => pointer.removed_at !== null).map((p) => this.#summary(p));
   }
 
   async open(id: string): Promise<OpenResult> {
@@ -141,7 +141,7 @@ export class Store extends EventTarget {
       return await this.#load(id, isWriter);
     } catch (error) {
       if (isWriter && !this.#sessions.has(id)) this.#locks.release(id);
-      return cannotRead(error);
+      return shelf.cannotRead(error);
     }
   }
 
@@ -226,11 +226,7 @@ export class Store extends EventTarget {
   }
 
   async keptDrafts(id: string): Promise<{ slot: string; at: string; job: Job }[]> {
-    const range = IDBKeyRange.bound([id, "kept "], [id, "kept \uffff"]);
-    const records = await this.#db.read(["drafts"], (tx) => tx.objectStore("drafts").getAll(range));
-    return records
-      .filter((record) => findFault(record.envelope) === null && record.envelope.schema <= this.#rules.schema)
-      .map(({ slot, envelope }) => ({ slot, at: envelope.saved_at, job: this.#migrated(envelope) }));
+    return shelf.keptDrafts(this.#db, id, this.#rules);
   }
 
   async deleteKeptDraft(id: string, slot: string): Promise<void> {
@@ -256,19 +252,11 @@ export class Store extends EventTarget {
   // ---- revisions ----------------------------------------------------------------------------------------------
 
   async revisions(id: string): Promise<RevisionInfo[]> {
-    const pointer = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").get(id));
-    return (pointer?.revisions ?? [])
-      .map(({ saved_at, ...mark }) => ({ ...mark, savedAt: saved_at }))
-      .reverse();
+    return shelf.revisions(this.#db, id);
   }
 
   async openRevision(id: string, rev: number): Promise<Job> {
-    const record = await this.#db.read(["revisions"], (tx) => tx.objectStore("revisions").get([id, rev]));
-    if (record === undefined) throw new StoreError("not-found", "That copy is no longer kept.");
-    const fault = findFault(record);
-    if (fault !== null) throw new StoreError("damaged", `That copy cannot be used: ${fault}.`);
-    if (record.schema > this.#rules.schema) throw new StoreError("read-only", TEXT.newerRecord);
-    return this.#migrated(record);
+    return shelf.openRevision(this.#db, id, rev, this.#rules);
   }
 
   async pin(id: string, rev: number, isPinned = true): Promise<void> {
@@ -297,21 +285,8 @@ export class Store extends EventTarget {
 
   /** Deletes for good what is in the bin, photos and copies too. */
   async emptyBin(ids?: string[]): Promise<number> {
-    const removed = (await this.#pointers()).filter((p) => p.removed_at !== null && (ids?.includes(p.id) ?? true));
-    for (const { id } of removed) {
-      const attached = await photos.list(this.#db, id);
-      await photos.remove(this.#db, attached.map((photo) => photo.id));
-      await this.#db.write(["jobs", "revisions", "drafts", "meta"], "strict", async (tx) => {
-        await together([
-          () => tx.objectStore("revisions").delete(IDBKeyRange.bound([id, -Infinity], [id, Infinity])),
-          () => tx.objectStore("drafts").delete(IDBKeyRange.bound([id, ""], [id, "\uffff"])),
-          () => tx.objectStore("meta").delete(`history/${id}`),
-          () => tx.objectStore("meta").delete(`writer/${id}`),
-          () => tx.objectStore("jobs").delete(id),
-        ]);
-      });
-      this.#emit("jobs", { id, rev: null, isOther: false });
-    }
+    const removed = await shelf.emptyBin(this.#db, ids);
+    for (const id of removed) this.#emit("jobs", { id, rev: null, isOther: false });
     if (removed.length > 0) this.#emit("facts", {});
     return removed.length;
   }
@@ -319,8 +294,7 @@ export class Store extends EventTarget {
   // ---- what could not be read, and raw export -----------------------------------------------------------------
 
   async quarantine(): Promise<QuarantineInfo[]> {
-    const records = await this.#db.read(["quarantine"], (tx) => tx.objectStore("quarantine").getAll());
-    return records.map(({ key, id, reason, at, record }) => ({ key, id, reason, at, raw: JSON.stringify(record) }));
+    return shelf.quarantined(this.#db);
   }
 
   async deleteQuarantined(key: string): Promise<void> {
@@ -361,7 +335,7 @@ export class Store extends EventTarget {
       rules: this.#rules,
       find: (id) => this.#findForRestore(id),
       save: (job, reason) => this.#saveRestored(job, reason),
-      addRevision: (record) => this.#addRevision(record),
+      addRevision: (record) => shelf.addRevision(this.#db, record),
     });
     this.#emit("facts", {});
     return result;
@@ -369,18 +343,7 @@ export class Store extends EventTarget {
 
   /** A job, or with no id everything, is in a file outside the browser now. */
   async noteBackup(id?: string): Promise<void> {
-    const at = new Date().toISOString();
-    await this.#db.write(["jobs", "meta"], "strict", async (tx) => {
-      const jobs = tx.objectStore("jobs");
-      for (const pointer of await jobs.getAll()) {
-        if (!isSoundPointer(pointer) || (id !== undefined && pointer.id !== id)) continue;
-        // A copy that went out alone is kept, so that it can be compared with when it comes back.
-        const revisions =
-          id === undefined ? pointer.revisions : pointer.revisions.map((m) => (m.rev === pointer.rev ? { ...m, exported: true } : m));
-        await jobs.put({ ...pointer, revisions, backup: { rev: pointer.rev, at } });
-      }
-      await tx.objectStore("meta").put({ key: "last-backup", value: at });
-    });
+    await shelf.noteBackup(this.#db, id);
     this.#emit("facts", {});
   }
 
@@ -505,30 +468,13 @@ export class Store extends EventTarget {
     };
   }
 
-  async #pointers(): Promise<Pointer[]> {
-    const pointers = await this.#db.read(["jobs"], (tx) => tx.objectStore("jobs").getAll()).catch(cannotRead);
-    return pointers.filter(isSoundPointer).sort((a, b) => b.saved_at.localeCompare(a.saved_at));
-  }
-
   #summary({ id, title, joints, saved_at, rev, schema }: Pointer): JobSummary {
     return { id, title, joints, savedAt: saved_at, rev, readOnly: schema > this.#rules.schema };
   }
 
-  #migrated(envelope: Envelope<Job>): Job {
-    return migratePayload(envelope, this.#rules.schema, this.#rules.migrations);
-  }
-
   async #changePointer(id: string, change: (pointer: Pointer) => Pointer): Promise<void> {
     if (this.#stopped !== null) throw new StoreError("newer-app", this.#stopped);
-    try {
-      await this.#db.write(["jobs"], "strict", async (tx) => {
-        const pointer = await tx.objectStore("jobs").get(id);
-        if (pointer === undefined) throw new StoreError("not-found", "There is no such job on this tablet.");
-        await tx.objectStore("jobs").put(change(pointer));
-      });
-    } catch (error) {
-      throw toStoreError(error);
-    }
+    await shelf.changePointer(this.#db, id, change);
     this.#emit("jobs", { id, rev: null, isOther: false });
     this.#channel.send({ type: "changed", id, rev: 0 });
   }
@@ -557,18 +503,6 @@ export class Store extends EventTarget {
       await session.commit(job, reason);
     }
     if (!wasOpen) await this.close(job.id);
-  }
-
-  async #addRevision(record: Envelope<Job>): Promise<void> {
-    await this.#db.write(["jobs", "revisions"], "strict", async (tx) => {
-      const pointer = await tx.objectStore("jobs").get(record.id);
-      if (pointer === undefined || pointer.revisions.some((mark) => mark.rev === record.rev) || record.rev >= pointer.rev) return;
-      const size = JSON.stringify(record.payload).length;
-      const mark = { rev: record.rev, saved_at: record.saved_at, reason: "From a backup", size, pinned: true, exported: false };
-      const revisions = [...pointer.revisions, mark].sort((a, b) => a.rev - b.rev);
-      await tx.objectStore("revisions").put(record);
-      await tx.objectStore("jobs").put({ ...pointer, revisions });
-    });
   }
 
   /** Tell older windows, now and whenever they write, which layout the records have from here on. */
@@ -619,9 +553,4 @@ export class Store extends EventTarget {
   #emit<K extends keyof StoreEvents>(type: K, detail: StoreEvents[K]): void {
     this.dispatchEvent(new CustomEvent(type, { detail }));
   }
-}
-
-/** A failed reading says so in words of its own: nothing has been lost. */
-function cannotRead(error: unknown): never {
-  throw error instanceof StoreError ? error : new StoreError("failed", TEXT.unreachable, error);
 }

@@ -3,7 +3,8 @@
 // go into the next one. Typing goes to a draft. Whatever fails stays here, on screen and in the queue.
 
 import { isQuotaFault, nameOf, together, type Database, type WriteTx } from "./db";
-import { canonicalText, jsonCopy, seal } from "./envelope";
+import { clearDrafts, keptCopy, lastWordsSlot, writeLastWords } from "./drafts";
+import { jsonCopy, seal } from "./envelope";
 import { checkedHistory, describe, target, withMove, withStep } from "./history";
 import { revisionsToDrop } from "./retention";
 import { draftText, savedText, TEXT } from "./texts";
@@ -22,7 +23,6 @@ import {
 
 export const DRAFT_DELAY_MS = 300;
 const RETRY_DELAYS_MS = [5_000, 15_000, 60_000];
-const MOST_KEPT_DRAFTS = 20;
 /** Unsaved and recent states are held in memory too, so that undo works when the disk does not. */
 const MOST_MEMORY_CHARS = 32 * 1024 ** 2;
 
@@ -147,10 +147,8 @@ export class Session {
     clearTimeout(this.#draftTimer);
     const typed = this.#typed;
     if (typed === null || this.readOnly !== null) return;
-    const now = new Date().toISOString();
     try {
-      const rev = this.pointer?.rev ?? 0;
-      const envelope = seal<Job>({ kind: "draft", ...this.#identity(), rev, parent: rev, saved_at: now, payload: jsonCopy(typed) });
+      const envelope = this.#sealDraft(typed);
       await this.#ctx.db.write(["jobs", "drafts", "meta"], durability, async (tx) => {
         await this.#guard(tx);
         await this.#clearDrafts(tx, null);
@@ -158,7 +156,7 @@ export class Session {
       });
       this.#forgetDrafts();
       this.#isClaimed = true;
-      if (this.#typed === typed) this.#draftAt = now;
+      if (this.#typed === typed) this.#draftAt = envelope.saved_at;
       if (this.#queue.length === 0) this.#recover();
       this.#ctx.onState(this);
     } catch (error) {
@@ -242,32 +240,8 @@ export class Session {
   /** The page is being hidden, perhaps for good. */
   hurry(): void {
     if (!this.isLoaded || this.readOnly !== null) return;
-    if (this.#queue.length > 0 || (this.#typed !== null && this.#draftAt === null)) this.#writeLastWords();
+    if (this.#queue.length > 0 || (this.#typed !== null && this.#draftAt === null)) this.#lastWords();
     void this.#pump();
-  }
-
-  /**
-   * One put and an explicit commit, both in this turn: a page that goes away never hears the answer to a question, so
-   * the usual checks cannot be made. The record therefore has a place of its own, where it cannot harm another's.
-   */
-  #writeLastWords(): void {
-    const handle = this.#ctx.db.handle;
-    if (handle === null) return;
-    const now = new Date().toISOString();
-    const rev = this.pointer?.rev ?? 0;
-    try {
-      const envelope = seal<Job>({ kind: "draft", ...this.#identity(), rev, parent: rev, saved_at: now, payload: jsonCopy(this.latest!) });
-      const tx = handle.transaction("drafts", "readwrite", { durability: "relaxed" });
-      tx.done.catch(() => undefined);
-      tx.store.put({ id: this.id, slot: this.#lastWordsSlot, envelope }).catch(() => undefined);
-      tx.commit();
-    } catch {
-      // Nothing more can be done in this turn; the timer and the queue go on if the page does.
-    }
-  }
-
-  get #lastWordsSlot(): string {
-    return `left ${this.#ctx.window}`;
   }
 
   stop(): void {
@@ -410,19 +384,9 @@ export class Session {
     return pointer;
   }
 
-  /** Drafts that were offered and not decided on are set aside before others take their place. */
   async #clearDrafts(tx: unknown, committed: Job | null): Promise<void> {
     const drafts = (tx as WriteTx<"drafts">).objectStore("drafts");
-    const now = committed === null ? null : canonicalText(committed);
-    const undecided = this.offered.filter((draft) => canonicalText(draft.envelope.payload) !== now);
-    await together([
-      ...undecided.map((draft) => () => drafts.put(keptCopy(draft))),
-      ...this.#foundSlots.map((slot) => () => drafts.delete([this.id, slot])),
-      () => drafts.delete([this.id, this.#lastWordsSlot]),
-    ]);
-    if (undecided.length === 0) return;
-    const kept = await drafts.getAllKeys(IDBKeyRange.bound([this.id, "kept "], [this.id, "kept \uffff"]));
-    await together(kept.slice(0, Math.max(0, kept.length - MOST_KEPT_DRAFTS)).map((key) => () => drafts.delete(key)));
+    await clearDrafts(drafts, this.id, this.offered, [...this.#foundSlots, lastWordsSlot(this.#ctx.window)], committed);
   }
 
   #forgetDrafts(): void {
@@ -446,12 +410,19 @@ export class Session {
   }
 
   async #keepCopy(job: Job): Promise<void> {
-    const now = new Date().toISOString();
+    const draft = keptCopy({ id: this.id, slot: "now", envelope: this.#sealDraft(job) });
+    await this.#ctx.db.write(["drafts"], "strict", (tx) => tx.objectStore("drafts").put(draft));
+  }
+
+  #sealDraft(job: Job): Envelope<Job> {
     const rev = this.pointer?.rev ?? 0;
-    const envelope = seal<Job>({ kind: "draft", ...this.#identity(), rev, parent: rev, saved_at: now, payload: jsonCopy(job) });
-    await this.#ctx.db.write(["drafts"], "strict", async (tx) => {
-      await tx.objectStore("drafts").put({ id: this.id, slot: `kept ${now}`, envelope });
-    });
+    const saved_at = new Date().toISOString();
+    return seal<Job>({ kind: "draft", ...this.#identity(), rev, parent: rev, saved_at, payload: jsonCopy(job) });
+  }
+
+  #lastWords(): void {
+    const { handle } = this.#ctx.db;
+    if (handle !== null) writeLastWords(handle, this.#ctx.window, () => this.#sealDraft(this.latest!));
   }
 
   async #stateOf(rev: number): Promise<Job | null> {
@@ -510,10 +481,6 @@ export class Session {
   #identity(): Stamp & { id: string } {
     return { ...this.#ctx.stamp(), id: this.id };
   }
-}
-
-function keptCopy(draft: DraftRecord): DraftRecord {
-  return { ...draft, slot: `kept ${draft.envelope.saved_at}` };
 }
 
 /** What a list of jobs shows. Nothing else in a job is looked at. */
