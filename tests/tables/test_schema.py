@@ -24,6 +24,8 @@ READERS = {
     "sealing-limits": catalogue.sealing_limits,
     "green-movement": catalogue.green_movement,
     "metals": catalogue.metals,
+    "packages": catalogue.packages,
+    "coverage": catalogue.coverage,
 }
 LEAST_ROWS = {"substrates": 35, "depth-rules": 8, "cautions": 60, "families": 10, "classes": 9, "finishes": 20}
 # Groups of three columns that must stand in order.
@@ -48,6 +50,8 @@ RANGES = {
     "sealing-limits": (("low", "value", "high"),),
     "green-movement": (("low", "value", "high"),),
     "tolerances": (("low", "value", "high"),),
+    "coverage": (("low", "value", "high"),),
+    "packages": (("residue_ml", "volume_ml"),),
 }
 ALL_ROWS = [(name, row_id) for name, reader in READERS.items() for row_id in reader()]
 
@@ -117,7 +121,7 @@ def test_a_remembered_figure_says_so(name, row_id):
 
 
 def test_columns_with_their_own_source_exist():
-    for name in ("substrates", "families", "rod-types", "metals"):
+    for name in ("substrates", "families", "rod-types", "metals", "packages"):
         for row in READERS[name]().values():
             known = {item.name for item in attrs.fields(type(row))}
             assert set(row.sources) <= known, row.id

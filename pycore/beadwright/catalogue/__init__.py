@@ -30,6 +30,7 @@ from .rows import (
     Limit,
     Metal,
     MovementClass,
+    Package,
     Region,
     RodSeries,
     RodSize,
@@ -58,6 +59,7 @@ __all__ = [
     "Limit",
     "Metal",
     "MovementClass",
+    "Package",
     "Region",
     "RodSeries",
     "RodSize",
@@ -69,6 +71,7 @@ __all__ = [
     "Use",
     "cautions",
     "classes",
+    "coverage",
     "depth_rules",
     "families",
     "finishes",
@@ -76,6 +79,7 @@ __all__ = [
     "heat_constants",
     "matching",
     "metals",
+    "packages",
     "regions",
     "rod_series",
     "rod_series_table",
@@ -104,6 +108,8 @@ EDITIONS: Mapping[str, str] = MappingProxyType({
     "sealing-limits": "2026-1",
     "green-movement": "2026-1",
     "metals": "2026-1",
+    "packages": "2026-1",
+    "coverage": "2026-1",
 })  # fmt: skip
 
 R = TypeVar("R", bound=Row | Caution)
@@ -243,6 +249,18 @@ def sealing_limits() -> Mapping[str, Limit]:
 def green_movement() -> Mapping[str, Limit]:
     """How far a bead may move while it cures, as a share of the width."""
     return _read("green-movement", lambda raw: Limit(**raw))
+
+
+@cache
+def packages() -> Mapping[str, Package]:
+    """Common sizes of sealant packages, metric and inch."""
+    return _read("packages", lambda raw: Package(**raw))
+
+
+@cache
+def coverage() -> Mapping[str, Limit]:
+    """Waste, coverage and pace of work: defaults to edit."""
+    return _read("coverage", lambda raw: Limit(**raw))
 
 
 @cache

@@ -234,6 +234,19 @@ class Limit(Row):
 
 
 @frozen(kw_only=True)
+class Package(Row):
+    """A common size of package: content, what stays inside, packages a box; `volume` and `residue` as people type them."""
+
+    sort: str
+    system: str
+    volume: str
+    volume_ml: float
+    residue: str
+    residue_ml: float
+    per_box: int
+
+
+@frozen(kw_only=True)
 class Metal(Row):
     """What the vapours of curing sealants do to a metal or mineral face.
 
