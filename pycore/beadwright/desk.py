@@ -73,7 +73,7 @@ def _field(item: Field) -> dict[str, Any]:
         "default": per_system(item.default),
         "required": item.required,
         "choices": _choices(item),
-        "choices_from": {"field": "substrate", "key": "finishes"} if item.table == "finishes" else "sealants" if item.table == "sealants" else None,
+        "choices_from": {"field": "substrate", "key": "finishes"} if item.table == "finishes" else item.table if item.kind == "reference" else None,
         "section": item.section,
         "show_when": {key: list(values) for key, values in item.show_when.items()} if item.show_when else None,
         "help": item.help,

@@ -6,10 +6,11 @@ from .job import JOB, SEALANT, SITE
 from .joint import CAUSE, FACE, JOINT, SIDE
 from .reader import Reads, Tables, read_group
 from .spec import Choice, Field, Group
+from .takeoff import EXTRA, PACK, RATE, RUN, TAKEOFF
 
-__all__ = ["CAUSE", "FACE", "GROUPS", "JOB", "JOINT", "SEALANT", "SIDE", "SITE", "Choice", "Field", "Group", "Reads", "Tables", "group", "read_group"]
+__all__ = ["CAUSE", "EXTRA", "FACE", "GROUPS", "JOB", "JOINT", "PACK", "RATE", "RUN", "SEALANT", "SIDE", "SITE", "TAKEOFF", "Choice", "Field", "Group", "Reads", "Tables", "group", "read_group"]
 
-GROUPS: tuple[Group, ...] = (JOB, SITE, SEALANT, JOINT, SIDE, CAUSE, FACE)
+GROUPS: tuple[Group, ...] = (JOB, SITE, SEALANT, JOINT, SIDE, CAUSE, FACE, TAKEOFF, RUN, PACK, EXTRA, RATE)
 
 
 def group(key: str) -> Group:

@@ -11,7 +11,7 @@ import json
 from pathlib import Path
 from typing import Any
 
-from ..fields import CAUSE, FACE, JOB, JOINT, SEALANT, SIDE, SITE, Field, Group
+from ..fields import CAUSE, EXTRA, FACE, JOB, JOINT, PACK, RATE, RUN, SEALANT, SIDE, SITE, TAKEOFF, Field, Group
 from .limits import FORMAT, MAX_JOINTS, MAX_TEXT, VERSION
 
 PATH = Path(__file__).with_name(f"beadwright-job-{VERSION}.schema.json")
@@ -60,7 +60,7 @@ def build() -> dict[str, Any]:
             "site": _of_group(SITE),
             "sealants": _rows(_of_group(SEALANT)),
             "joints": _rows(joint),
-            "takeoff": {"type": "object"},
+            "takeoff": _of_group(TAKEOFF, runs=_rows(_of_group(RUN)), packs=_rows(_of_group(PACK), 200), extras=_rows(_of_group(EXTRA), 200), rates=_rows(_of_group(RATE), 200)),
             "cure": {"type": "object"},
             "surveys": {"type": "array", "items": {"type": "object"}},
         },

@@ -41,10 +41,10 @@ def blank(units: str) -> dict[str, Any]:
 
 
 def blank_row(key: str, units: str) -> dict[str, Any]:
-    """An empty row of one group (`sealant`, `joint`, `side`, `cause`, `face`); the caller sets `id`."""
+    """An empty row of one group (`sealant`, `joint`, `side`, `run`, `pack`, …); the caller sets `id`."""
     row = _defaults(group(key), units)
     if key == "joint":
         row |= {"side_a": blank_row("side", units), "side_b": blank_row("side", units), "causes": [], "face": {}}
-    if key in ("joint", "sealant", "cause"):
+    if group(key).path.endswith("[]"):
         row = {"id": "", **row}
     return row
