@@ -8,9 +8,10 @@ here, with hashlib, not with the code that wrote them.
 
     python tests/browser/store/kill_harness.py --rounds 200
 
-The page is found through data-testid hooks that the app has as well (`field-title`, `save-state` with `data-kind`):
+The page is found through data-testid hooks that the app has as well (`field-title`, `save-state` with `data-kind`), so
+that the app as built can be killed in the same way:
 
-    python tests/browser/store/kill_harness.py --rounds 20 --url http://127.0.0.1:8000/#/job/x --blank http://127.0.0.1:8000/forms.json
+    python tests/browser/store/kill_harness.py --rounds 20 --app web/dist
 
 That the harness can go red is shown with faults put into the page (`--fault`), 40 rounds each:
 
@@ -34,6 +35,7 @@ import time
 from collections.abc import Callable
 from dataclasses import dataclass, field
 from pathlib import Path
+from typing import Any
 
 # Seconds of editing before the kill, at random between these.
 LEAST_S, MOST_S = 0.05, 0.7
@@ -91,7 +93,10 @@ async ([fieldSelector, stateSelector, from]) => {
     Promise.resolve().then(look);
   });
   const type = (text) => { input.value = text; input.dispatchEvent(new Event("input", {bubbles: true, composed: true})); };
-  const enter = () => input.dispatchEvent(new Event("change", {bubbles: true, composed: true}));
+  const enter = () => {
+    input.dispatchEvent(new KeyboardEvent("keydown", {key: "Enter", bubbles: true, composed: true}));
+    input.dispatchEvent(new Event("change", {bubbles: true, composed: true}));
+  };
   for (let n = from; ; n++) {
     window.harnessTells("issued", n);
     type(String(n));
@@ -232,11 +237,10 @@ def run(
     executable: str | None,
     arguments: list[str],
     seed: int,
-    job: str = "kill",
+    make_job: Callable[[Any], str] | None = None,
     database: str = "beadwright",
     field_selector: str = '[data-testid="field-title"] input',
     state_selector: str = '[data-testid="save-state"]',
-    ready: str = 'document.querySelector(\'[data-testid="save-state"]\')?.dataset.kind !== undefined && document.body.dataset.ready === "yes"',
     is_uniform: bool = True,
     fault: str | None = None,
     say: Callable[[str], None] = lambda _text: None,
@@ -244,6 +248,7 @@ def run(
     from playwright.sync_api import Error, sync_playwright
 
     dice = random.Random(seed)
+    job = None if make_job is not None else "kill"
     report = Report()
     began = time.monotonic()
     issued = acknowledged = 0
@@ -277,8 +282,12 @@ def run(
 
             ear = Ear(report, issued, acknowledged, kill_at=dice.randint(1, 15) if round_ % 2 else 0)
             context.expose_binding("harnessTells", ear.hear)
-            page.goto(url)
-            page.wait_for_function(ready)
+            if make_job is not None and job is None:
+                page.goto(url)
+                job = make_job(page)
+            page.goto(url if make_job is None else f"{url}#/job/{job}")
+            page.wait_for_selector(field_selector, state="attached")
+            page.wait_for_function("(s) => document.querySelector(s)?.dataset.kind !== undefined && document.querySelector(s).dataset.kind !== ''", arg=state_selector)
             if dump is not None and fault is None:
                 shown = edit_number(page.input_value(field_selector))
                 if shown != found:
@@ -307,14 +316,20 @@ def run(
     return report
 
 
+def new_job(page: Any) -> str:
+    """Make a job in the app as a person would; its id is in the address then."""
+    page.click('[data-testid="new-metric"]')
+    page.wait_for_function("location.hash.startsWith('#/job/')")
+    page.wait_for_selector('[data-testid="save-state"][data-kind="saved"]')
+    return page.evaluate("decodeURIComponent(location.hash.split('/')[2])")
+
+
 def main() -> int:
     parser = argparse.ArgumentParser(description="Kill the browser at random moments and check what it kept.")
     parser.add_argument("--rounds", type=int, default=20)
     parser.add_argument("--seed", type=int, default=None)
     parser.add_argument("--fault", choices=sorted(FAULTS), default=None, help="put a fault into the page: the run must go red")
-    parser.add_argument("--url", default=None, help="another page to drive, with one job open and the same hooks")
-    parser.add_argument("--blank", default=None, help="a page of the same origin that writes nothing")
-    parser.add_argument("--job", default="kill", help="id of the job that the page has open")
+    parser.add_argument("--app", type=Path, default=None, help="folder of the built app: drive it instead of the small page")
     options = parser.parse_args()
 
     sys.path.insert(0, str(Path(__file__).resolve().parent))
@@ -329,9 +344,9 @@ def main() -> int:
         "fault": options.fault,
         "say": lambda text: print(text, flush=True),
     }
-    if options.url is not None:
-        ready = 'document.querySelector(\'[data-testid="save-state"]\')?.dataset.kind !== undefined'
-        report = run(options.rounds, url=options.url, blank=options.blank or options.url, job=options.job, is_uniform=False, ready=ready, **common)
+    if options.app is not None:
+        with conftest.serve(options.app) as base:
+            report = run(options.rounds, url=f"{base}/index.html", blank=f"{base}/forms.json", make_job=new_job, is_uniform=False, **common)
     else:
         with tempfile.TemporaryDirectory() as folder:
             conftest.build_pages(Path(folder))

@@ -116,6 +116,15 @@ def test_an_offered_draft_on_which_nobody_decided_is_set_aside_not_overwritten(p
     assert got == [["yesterday"], 0, ["today"] if how == "change" else []]
 
 
+def test_typing_back_to_what_is_saved_leaves_no_draft_and_says_saved(page):
+    got = page.evaluate(
+        """async () => { store.change("a", bw.job("a", "typed")); await bw.sleep(450); const one = (await bw.dump()).drafts.length;
+        store.change("a", bw.job("a", "saved")); await bw.sleep(450);
+        return [one, (await bw.dump()).drafts.length, store.saveState("a").kind]; }"""
+    )
+    assert got == [1, 0, "saved"]
+
+
 def test_a_damaged_draft_is_quarantined_and_the_job_opens(page):
     page.evaluate("async () => { store.change('a', bw.job('a', 'typed')); await bw.sleep(450); }")
     page.evaluate("async () => { await bw.raw(async (db) => { const d = await db.get('drafts', ['a', 'now']); d.envelope.payload.edit = 'flipped'; await db.put('drafts', d); }); }")

@@ -93,3 +93,11 @@ def test_every_kind_of_tear_is_seen(sound_dump, word, harm):
     dump = copy.deepcopy(sound_dump)
     harm(dump)
     assert any(word in fault for fault in kill_harness.find_torn(dump, "kill", is_uniform=True))
+
+
+@pytest.mark.long
+def test_promises_1_and_2_hold_over_two_hundred_rounds(store_url, in_own_thread):
+    report = in_own_thread(run, store_url, 200)
+    print(report.text())
+    assert report.is_clean, report.faults
+    assert report.rounds == 200

@@ -4,7 +4,7 @@
 
 import { isQuotaFault, nameOf, together, type Database, type WriteTx } from "./db";
 import { clearDrafts, keptCopy, lastWordsSlot, writeLastWords } from "./drafts";
-import { jsonCopy, seal } from "./envelope";
+import { canonicalText, jsonCopy, seal } from "./envelope";
 import { checkedHistory, describe, target, withMove, withStep } from "./history";
 import { revisionsToDrop } from "./retention";
 import { draftText, savedText, TEXT } from "./texts";
@@ -148,6 +148,7 @@ export class Session {
     const typed = this.#typed;
     if (typed === null || this.readOnly !== null) return;
     try {
+      if (this.#isSaved(typed)) return await this.#dropDraft(typed, durability);
       const envelope = this.#sealDraft(typed);
       await this.#ctx.db.write(["jobs", "drafts", "meta"], durability, async (tx) => {
         await this.#guard(tx);
@@ -163,6 +164,25 @@ export class Session {
       this.#fail(error);
       throw error;
     }
+  }
+
+  /** Typed back to what is saved: there is nothing left to offer, and the job is as saved as it was. */
+  async #dropDraft(typed: Job, durability: "relaxed" | "strict"): Promise<void> {
+    await this.#ctx.db.write(["jobs", "drafts", "meta"], durability, async (tx) => {
+      await this.#guard(tx);
+      await this.#clearDrafts(tx, typed);
+      await tx.objectStore("drafts").delete([this.id, "now"]);
+    });
+    this.#forgetDrafts();
+    this.#isClaimed = true;
+    if (this.#typed === typed) this.#typed = null;
+    if (this.#queue.length === 0) this.#recover();
+    this.#ctx.onState(this);
+  }
+
+  #isSaved(job: Job): boolean {
+    const saved = this.#queue.length === 0 && this.pointer !== null ? this.#memory.get(this.pointer.rev) : undefined;
+    return saved !== undefined && canonicalText(saved.job) === canonicalText(job);
   }
 
   // ---- saving -------------------------------------------------------------------------------------------------

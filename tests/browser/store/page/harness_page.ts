@@ -8,7 +8,7 @@ const FILLER = "0123456789abcdef".repeat(2048);
 const store = await Store.open({ app: "harness" });
 document.body.insertAdjacentHTML(
   "beforeend",
-  `<div data-testid="field-title"><input></div><p data-testid="save-state" data-kind="idle"></p><p data-testid="recovered"></p>`,
+  `<div data-testid="field-title"><input></div><p data-testid="save-state" data-kind=""></p><p data-testid="recovered"></p>`,
 );
 const hook = (name: string): HTMLElement => document.querySelector(`[data-testid="${name}"]`)!;
 const input = document.querySelector("input")!;
@@ -36,4 +36,3 @@ if ((await store.list()).some((summary) => summary.id === ID)) {
 input.addEventListener("input", () => store.change(ID, jobFor(input.value)));
 input.addEventListener("change", () => void store.commit(ID, jobFor(input.value)));
 show();
-document.body.dataset["ready"] = "yes";
