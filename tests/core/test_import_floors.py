@@ -50,7 +50,10 @@ def test_physics_imports_nothing_of_ours_and_no_library():
     for path in (PACKAGE / "physics").glob("*.py"):
         assert not imported_rooms(path) - {"physics"}
         names = {alias.name for node in ast.walk(ast.parse(path.read_text())) if isinstance(node, ast.Import) for alias in node.names}
-        assert names <= {"math"}, f"{path.name} imports {names}"
+        # The field over a section needs arrays; it takes numpy inside its functions only (test_docstrings holds that), so that
+        # the room opens, and everything else in it works, before numpy has arrived.
+        allowed = {"math", "numpy"} if path.name == "section_solve.py" else {"math"}
+        assert names <= allowed, f"{path.name} imports {names}"
 
 
 def test_the_finder_sees_each_form_of_import(tmp_path, monkeypatch):
