@@ -468,16 +468,17 @@ def _arrival(np: Any, field: Any, psi: Any, levels: Any, top: float, ahead: Any,
     roots = np.sqrt(np.append(levels, top))
     short = np.sqrt(np.maximum(np.append(levels, top)[:, None, None] - np.concatenate((field, psi[None])), 0.0))
     first = np.concatenate((ahead, np.zeros((1, *psi.shape), dtype=bool))).sum(axis=0)
-    at = np.minimum(first, LEVELS - 1)
+    passed = np.minimum(first, LEVELS - 1)
+    # the level just behind the front is within the grid's own blur; one farther on is used where there is one
+    at = np.minimum(passed + 1, LEVELS - 1)
     following = np.minimum(at + 1, LEVELS - 1)
 
     def taken(array: Any, index: Any) -> Any:
         return np.take_along_axis(array, index[None], 0)[0]
 
-    low = np.where(at > 0, roots[np.maximum(at - 1, 0)], 0.0)
+    low = np.where(passed > 0, roots[np.maximum(passed - 1, 0)], 0.0)
     here, there = taken(short, at), taken(short, following)
     slope = np.where(following > at, (there - here) / np.maximum(roots[following] - roots[at], 1e-300), 1.0)
     back = roots[at] - here / np.maximum(slope, 0.25)
-    arrival = np.clip(back, low, roots[at]) ** 2
-    arrival = np.where(at == LEVELS - 1, np.minimum(np.maximum(psi, arrival), top), arrival)
+    arrival = np.clip(back, low, roots[passed]) ** 2
     return np.where(held, 0.0, arrival)
