@@ -25,7 +25,7 @@ from typing import Any
 ROOT = Path(__file__).resolve().parents[2]
 sys.path[:0] = [str(ROOT / "demo"), str(ROOT)]
 
-import steps  # noqa: E402
+import steps
 
 if Path(sys.prefix).resolve() != steps.VENV.resolve():  # run in the project's own environment
     steps.check_versions()
@@ -33,10 +33,15 @@ if Path(sys.prefix).resolve() != steps.VENV.resolve():  # run in the project's o
     steps.install_test_packages()
     os.execv(steps.venv_python(), [str(steps.venv_python()), *sys.argv])
 
-from playwright.sync_api import sync_playwright  # noqa: E402
-from server import DIST, Site  # noqa: E402
-
-from tests.browser.conftest import CHROMIUM_ARGUMENTS, TABLET_LANDSCAPE, build, build_core_page, until  # noqa: E402
+from playwright.sync_api import sync_playwright
+from server import DIST, Site
+from tests.browser.conftest import (
+    CHROMIUM_ARGUMENTS,
+    TABLET_LANDSCAPE,
+    build,
+    build_core_page,
+    until,
+)
 
 ANSWERED = "document.getElementById('answer').textContent !== ''"
 STOCK_PAGE = '<!doctype html><html lang="en"><meta charset="utf-8"><title>stock</title><script type="module" src="page.js"></script>'
