@@ -88,12 +88,10 @@ def store_url(store_folder: Path) -> Iterator[str]:
 
 
 @pytest.fixture(scope="session")
-def store_browser():
-    playwright = pytest.importorskip("playwright.sync_api")
-    with playwright.sync_playwright() as pw:
-        browser = pw.chromium.launch(executable_path=find_chromium(), args=CHROMIUM_ARGUMENTS)
-        yield browser
-        browser.close()
+def store_browser(playwright):
+    browser = playwright.chromium.launch(executable_path=find_chromium(), args=CHROMIUM_ARGUMENTS)
+    yield browser
+    browser.close()
 
 
 @pytest.fixture(scope="session")
