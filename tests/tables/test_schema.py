@@ -24,6 +24,9 @@ READERS = {
     "sealing-limits": catalogue.sealing_limits,
     "green-movement": catalogue.green_movement,
     "metals": catalogue.metals,
+    "byproducts": catalogue.byproducts,
+    "exposure-limits": catalogue.exposure_limits,
+    "cure-stages": catalogue.cure_stages,
     "packages": catalogue.packages,
     "coverage": catalogue.coverage,
 }

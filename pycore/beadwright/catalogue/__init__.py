@@ -21,9 +21,12 @@ from .rows import (
     READ,
     STATUSES,
     Band,
+    Byproduct,
     Caution,
+    CureStage,
     Depth,
     DepthRule,
+    ExposureLimit,
     Family,
     Finish,
     HeatConstant,
@@ -50,9 +53,12 @@ __all__ = [
     "READ",
     "STATUSES",
     "Band",
+    "Byproduct",
     "Caution",
+    "CureStage",
     "Depth",
     "DepthRule",
+    "ExposureLimit",
     "Family",
     "Finish",
     "HeatConstant",
@@ -69,6 +75,7 @@ __all__ = [
     "Table",
     "Tolerance",
     "Use",
+    "byproducts",
     "cautions",
     "classes",
     "coverage",
@@ -110,6 +117,9 @@ EDITIONS: Mapping[str, str] = MappingProxyType({
     "metals": "2026-1",
     "packages": "2026-1",
     "coverage": "2026-1",
+    "byproducts": "2026-1",
+    "exposure-limits": "2026-1",
+    "cure-stages": "2026-1",
 })  # fmt: skip
 
 R = TypeVar("R", bound=Row | Caution)
@@ -267,6 +277,24 @@ def coverage() -> Mapping[str, Limit]:
 def metals() -> Mapping[str, Metal]:
     """What curing vapours do to metals and minerals."""
     return _read("metals", lambda raw: Metal(**raw))
+
+
+@cache
+def byproducts() -> Mapping[str, Byproduct]:
+    """What a family gives off while it cures, by family id; families that give off nothing are absent."""
+    return _read("byproducts", lambda raw: Byproduct(**raw))
+
+
+@cache
+def exposure_limits() -> Mapping[str, ExposureLimit]:
+    """Workplace limits by agent, authority and span of time."""
+    return _read("exposure-limits", lambda raw: ExposureLimit(**{**raw, "regions": tuple(raw["regions"])}))
+
+
+@cache
+def cure_stages() -> Mapping[str, CureStage]:
+    """Stages of a curing bead, in the order in which they usually come."""
+    return _read("cure-stages", lambda raw: CureStage(**raw))
 
 
 @cache

@@ -261,6 +261,48 @@ class Metal(Row):
 
 
 @frozen(kw_only=True)
+class Byproduct(Row):
+    """What a sealant family gives off: one molecule of `active` frees `released_per_active` of the agent."""
+
+    agent: str
+    agent_label: str
+    agent_g_mol: float
+    active: str
+    active_g_mol: float
+    released_per_active: float
+    share_low_fraction: float
+    share_fraction: float
+    share_high_fraction: float
+    density_g_ml: float
+
+
+@frozen(kw_only=True)
+class ExposureLimit(Row):
+    """A workplace limit; `span` is `8h`, `15min` or `ceiling`, `year` None where the edition is not known."""
+
+    agent: str
+    authority: str
+    year: int | None
+    regions: tuple[str, ...]
+    span: str
+    ppm: float
+    mg_m3: float
+
+
+@frozen(kw_only=True)
+class CureStage(Row):
+    """A stage of a curing bead; `basis` tells what `value` counts: `time`, `depth`, `neck-share` or `through`."""
+
+    basis: str
+    value: float
+    low: float
+    high: float
+    unit: str
+    least_d: float
+    is_rough: bool
+
+
+@frozen(kw_only=True)
 class Caution:
     """A caution in our own words, with its reason, its source, and when it speaks."""
 

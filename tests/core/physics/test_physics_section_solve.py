@@ -177,12 +177,12 @@ def test_what_is_refused_of_a_fillet(arguments, name):
 
 
 def test_a_solve_is_quick():
-    """The budget is 150 ms in a browser; here a quarter of that, the better of several tries since the machine is shared."""
+    """The budget is 150 ms in a browser; here a quarter of that, processor time, the best of several tries since the machine is shared."""
     section_solve._solved_on(("hourglass", 20.0, 10.0, 2.0, 4.0), frozenset({"front"}), section_solve.LINES, section_solve.NODES)
     times = []
-    for step in range(5):
-        start = time.perf_counter()
+    for step in range(9):
+        start = time.process_time()
         section_solve.hourglass_reach(20.0, 10.0, 2.0 + 0.001 * step, 4.0, "front+side-a")
         section_solve.hourglass_picture(20.0, 10.0, 2.0 + 0.001 * step, 4.0, "front+side-a")
-        times.append(time.perf_counter() - start)
+        times.append(time.process_time() - start)
     assert min(times) < 0.040, times
