@@ -253,7 +253,11 @@ def _widths(joint: JointInput, project: Project, sealant: Sealant, capability: w
     classes, smallest = _by_class(sealant, capability, movement, gap, lambda required: design(required, chosen), judged if present is not None else None)
     other = width.EACH_WAY if capability.convention == width.TOTAL_SWING else width.TOTAL_SWING
     other_capability = width.capability_of(sealant, other)
-    other_required = width.governing(width.needs(movement, other_capability, gap)).width_mm if other_capability.is_known else None
+    other_required = None
+    if other_capability.is_known:
+        # A lap's slide differs between the conventions, so the budget is made anew.
+        elsewhere = budget(movement.kind, movement.elements, joint.causes, movement.seal_from_c, movement.seal_to_c, total_swing=other == width.TOTAL_SWING)
+        other_required = width.governing(width.needs(elsewhere, other_capability, gap)).width_mm
     scale = width.greatest_scale(judged, movement, capability, gap) if judged > 0 else None
     return Widths(
         tuple(found), top, top.width_mm, parts, worst, rss, design(top.width_mm, worst), design(top.width_mm, rss), designed,

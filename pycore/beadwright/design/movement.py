@@ -1,7 +1,8 @@
 """The movement budget: every cause with what it opens, closes and shears.
 
 Opening is what widens the gap after sealing, closing what narrows it, shear what makes the
-sides slip. With no restriction on the sealing temperature the full range counts both ways.
+sides slip. With no restriction on the sealing temperature the full range counts both ways; but one
+bead is sealed once, so its total swing holds the range once, whatever the temperature at sealing.
 """
 
 from __future__ import annotations
@@ -9,7 +10,7 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from typing import Any
 
-from attrs import frozen
+from attrs import evolve, frozen
 
 from ..physics import strain, thermal
 from ..working import DEFINITION, MEMORY, Step, Value
@@ -28,6 +29,7 @@ class Cause:
     closing_mm: float
     shear_mm: float
     source: str
+    swing_mm: float
 
 
 @frozen
@@ -46,6 +48,8 @@ class Movement:
     entered_closing_mm: float
     entered_shear_mm: float
     across_mm: float
+    reversible_mm: float
+    swing_mm: float
     seal_from_c: float | None
     seal_to_c: float | None
     total_swing: bool
@@ -76,12 +80,21 @@ class Movement:
         thermal_mm = sum(item.rate_mm_per_k * (item.hot_c - at) for item, at in zip(self.elements, sealed_c, strict=True))
         return thermal_mm + self.fixed_closing_mm
 
+    def swing_from(self, *sealed_c: float) -> float:
+        """Total movement, from most closed to most open, of a bead sealed at the given side temperatures."""
+        thermal_mm = sum(_swing(item, at, at) for item, at in zip(self.elements, sealed_c, strict=True))
+        return thermal_mm + self.fixed_opening_mm + self.fixed_closing_mm - self.reversible_mm
+
+    def swing_at(self, *sealed_c: float) -> float:
+        """Total movement across the joint of such a bead; in a lap the sides' own movement is shear instead."""
+        return self.entered_opening_mm + self.entered_closing_mm if self.kind == "lap" else self.swing_from(*sealed_c)
+
     def at(self, *sealed_c: float) -> tuple[float, float, float]:
         """Opening, closing and shear of a bead sealed at the given side temperatures; never below zero."""
         opening, closing = max(0.0, self.opening_from(*sealed_c)), max(0.0, self.closing_from(*sealed_c))
         if self.kind != "lap":
             return opening, closing, self.shear_mm
-        slide = opening + closing if self.total_swing else max(opening, closing)
+        slide = self.swing_from(*sealed_c) if self.total_swing else max(opening, closing)
         return self.entered_opening_mm, self.entered_closing_mm, strain.combined_shear_mm(slide + self.entered_shear_mm, self.across_mm)
 
 
@@ -114,13 +127,17 @@ def budget(kind: str, elements: Sequence[Element], causes: Sequence[Mapping[str,
     entered_opening, entered_closing = sum(row.opening_mm for row in entered), sum(row.closing_mm for row in entered)
     entered_shear = sum(cause["shear"] or 0.0 for cause in causes)
     across = sum(cause["shear_across"] or 0.0 for cause in causes)
-    slip = _slip(elements, seal_from_c, seal_to_c, steps, total_swing=total_swing) if kind in ("mixed", "lap") else 0.0
+    slips = _slips(elements, seal_from_c, seal_to_c, steps) if kind in ("mixed", "lap") else []
+    slip = sum(row.shear_mm for row in slips)
     moved_opening, moved_closing = sum(row.opening_mm for row in rows), sum(row.closing_mm for row in rows)
-    if slip:
-        rows.append(Cause("slip", "Sides slip along the joint", 0.0, 0.0, slip, "Definition: difference of the two sides' movement along the joint"))
+    rows += slips
+    swing = sum(row.swing_mm for row in rows)
     if kind == "lap":
-        slide = moved_opening + moved_closing if total_swing else max(moved_opening, moved_closing)
-        rows = [Cause(row.key, row.label, 0.0, 0.0, row.shear_mm or (row.opening_mm + row.closing_mm if total_swing else max(row.opening_mm, row.closing_mm)), row.source) for row in rows]
+        opens = moved_opening >= moved_closing
+        slide = swing if total_swing else max(moved_opening, moved_closing)
+        rows = [evolve(row, opening_mm=0.0, closing_mm=0.0, shear_mm=row.shear_mm or (row.swing_mm if total_swing else row.opening_mm if opens else row.closing_mm), swing_mm=0.0) for row in rows]
+        steps.append(_slide_step(elements, seal_from_c, seal_to_c, fixed, moved_opening, moved_closing, slide, entered_shear, total_swing=total_swing))
+        swing = 0.0
         across += slip
         opening, closing, along = entered_opening, entered_closing, slide + entered_shear
     else:
@@ -128,11 +145,15 @@ def budget(kind: str, elements: Sequence[Element], causes: Sequence[Mapping[str,
     shear = strain.combined_shear_mm(along, across)
     rows += entered
     steps += _sums(kind, opening, closing, along, across, shear, rows)
+    swing += entered_opening + entered_closing
+    if total_swing and kind != "lap":
+        steps.append(_swing_step(elements, seal_from_c, seal_to_c, [row for row in rows if not row.key.startswith("thermal-")], swing))
+    reversible = sum(row.opening_mm for row in fixed if row.key.startswith("moisture-"))
     fixed_opening = sum(row.opening_mm for row in fixed) + (0.0 if kind == "lap" else entered_opening)
     fixed_closing = sum(row.closing_mm for row in fixed) + (0.0 if kind == "lap" else entered_closing)
     return Movement(
         kind, opening, closing, shear, tuple(rows), tuple(elements), fixed_opening, fixed_closing,
-        entered_opening, entered_closing, entered_shear, across, seal_from_c, seal_to_c, total_swing, tuple(steps),
+        entered_opening, entered_closing, entered_shear, across, reversible, swing, seal_from_c, seal_to_c, total_swing, tuple(steps),
     )  # fmt: skip
 
 
@@ -153,7 +174,57 @@ def _thermal(item: Element, seal_from_c: float | None, seal_to_c: float | None, 
         common | {"h": Value(item.hot_c, "temperature"), "s": Value(cool, "temperature")}, Value(closing, "length"), _GUIDE, MEMORY,
         remark="No limit on sealing temperature: the coldest counts as the coldest sealing." if seal_from_c is None else "",
     ))  # fmt: skip
-    return Cause(f"thermal-{mark}", f"Temperature, {item.label[0].lower()}{item.label[1:]}", opening, closing, 0.0, _GUIDE)
+    return Cause(f"thermal-{mark}", f"Temperature, {item.label[0].lower()}{item.label[1:]}", opening, closing, 0.0, _GUIDE, _swing(item, seal_from_c, seal_to_c))
+
+
+def _swing_ends(item: Element, seal_from_c: float | None, seal_to_c: float | None) -> tuple[float, float]:
+    """The hottest and coldest that an element passes; a bead sealed beyond its range starts from there."""
+    hot = item.hot_c if seal_to_c is None else max(item.hot_c, seal_to_c)
+    cold = item.cold_c if seal_from_c is None else min(item.cold_c, seal_from_c)
+    return hot, cold
+
+
+def _swing(item: Element, seal_from_c: float | None, seal_to_c: float | None) -> float:
+    hot, cold = _swing_ends(item, seal_from_c, seal_to_c)
+    return item.rate_mm_per_k * (hot - cold)
+
+
+def _swing_terms(elements: Sequence[Element], seal_from_c: float | None, seal_to_c: float | None) -> tuple[list[str], dict[str, Value]]:
+    """`α · L · (T_hot − T_cold)` of each side with its numbers."""
+    terms: list[str] = []
+    inputs: dict[str, Value] = {}
+    for item in elements:
+        mark = item.key[-1].upper()
+        hot, cold = _swing_ends(item, seal_from_c, seal_to_c)
+        terms.append(f"{{a{mark}}} × {{L{mark}}} × ({{h{mark}}} − {{c{mark}}})")
+        inputs |= {f"a{mark}": Value(item.expansion_per_k, "expansion"), f"L{mark}": Value(item.effective_mm, "length"), f"h{mark}": Value(hot, "temperature"), f"c{mark}": Value(cold, "temperature")}
+    return terms, inputs
+
+
+def _swing_step(elements: Sequence[Element], seal_from_c: float | None, seal_to_c: float | None, others: Sequence[Cause], swing_mm: float) -> Step:
+    """Working of the total swing."""
+    terms, inputs = _swing_terms(elements, seal_from_c, seal_to_c)
+    parts = {f"p{index}": Value(row.swing_mm, "length") for index, row in enumerate(others) if row.swing_mm}
+    return Step(
+        "swing", "Total swing", "m", "Σ α · L · (T_hot − T_cold) + all other causes, opening and closing", " + ".join([*terms, *(f"{{{key}}}" for key in parts)]),
+        inputs | parts, Value(swing_mm, "length"), _GUIDE, MEMORY,
+        remark="One bead is sealed once: its range counts once, whatever the temperature at sealing.",
+    )  # fmt: skip
+
+
+def _slide_step(elements: Sequence[Element], seal_from_c: float | None, seal_to_c: float | None, fixed: Sequence[Cause], opening_mm: float, closing_mm: float, slide_mm: float,
+                entered_mm: float, *, total_swing: bool) -> Step:  # fmt: skip
+    """Working of the slide along a lap: what would open or close a butt joint, and what is entered."""
+    inputs = {"e": Value(entered_mm, "length")}
+    if total_swing:
+        terms, numbers = _swing_terms(elements, seal_from_c, seal_to_c)
+        parts = {f"p{index}": Value(row.swing_mm, "length") for index, row in enumerate(fixed) if row.swing_mm}
+        formula, template = "Σ α · L · (T_hot − T_cold) + moisture + entered slip", " + ".join([*terms, *(f"{{{key}}}" for key in parts), "{e}"])
+        inputs |= numbers | parts
+    else:
+        formula, template = "greater of Σ(by cold) and Σ(by heat), moisture with it, + entered slip", "max({o}, {c}) + {e}"
+        inputs |= {"o": Value(opening_mm, "length"), "c": Value(closing_mm, "length")}
+    return Step("slide", "Slip along the lap", "s_along", formula, template, inputs, Value(slide_mm + entered_mm, "length"), "Definition: what would open or close a butt joint slides a lap", DEFINITION)
 
 
 def _moisture(item: Element, steps: list[Step]) -> list[Cause]:
@@ -167,7 +238,7 @@ def _moisture(item: Element, steps: list[Step]) -> list[Cause]:
             {"R": Value(item.reversible_fraction, "percent"), "L": Value(item.effective_mm, "length")}, Value(swing, "length"),
             source, status, remark="State at sealing unknown: counted both ways.",
         ))  # fmt: skip
-        rows.append(Cause(f"moisture-{mark}", f"Wetting and drying, {side}", swing, swing, 0.0, source))
+        rows.append(Cause(f"moisture-{mark}", f"Wetting and drying, {side}", swing, swing, 0.0, source, swing))
     if item.irreversible_fraction and item.effective_mm:
         change = thermal.moisture_change_mm(item.effective_mm, item.irreversible_fraction)
         grows = change > 0
@@ -178,37 +249,68 @@ def _moisture(item: Element, steps: list[Step]) -> list[Cause]:
             source, status,
             remark="Growth closes the joint." if grows else "Shrinkage opens the joint.",
         ))  # fmt: skip
-        rows.append(Cause(f"lasting-{mark}", f"{'Lasting growth' if grows else 'Lasting shrinkage'}, {side}", max(0.0, -change), max(0.0, change), 0.0, source))
+        rows.append(Cause(f"lasting-{mark}", f"{'Lasting growth' if grows else 'Lasting shrinkage'}, {side}", max(0.0, -change), max(0.0, change), 0.0, source, abs(change)))
     return rows
 
 
 def _entered(index: int, cause: Mapping[str, Any]) -> Cause:
     shear = strain.combined_shear_mm(cause["shear"] or 0.0, cause["shear_across"] or 0.0)
-    return Cause(f"cause-{index}", cause["label"] or f"Cause {index + 1}", cause["opening"] or 0.0, cause["closing"] or 0.0, shear, cause["source"] or "entered by the user")
+    opening, closing = cause["opening"] or 0.0, cause["closing"] or 0.0
+    return Cause(f"cause-{index}", cause["label"] or f"Cause {index + 1}", opening, closing, shear, cause["source"] or "entered by the user", opening + closing)
 
 
-def _slip(elements: Sequence[Element], seal_from_c: float | None, seal_to_c: float | None, steps: list[Step], *, total_swing: bool) -> float:
-    """Largest difference of the two sides' movement along the joint, over the seasons and sealing temperatures."""
+def _slips(elements: Sequence[Element], seal_from_c: float | None, seal_to_c: float | None, steps: list[Step]) -> list[Cause]:
+    """Difference of the two sides' movement along the joint: by temperature, and by moisture."""
+    found = [_thermal_slip(elements, seal_from_c, seal_to_c, steps), _moisture_slip(elements, steps)]
+    return [row for row in found if row is not None and row.shear_mm]
+
+
+_SLIP_SOURCE = "Definition: difference of the two sides' movement along the joint"
+
+
+def _thermal_slip(elements: Sequence[Element], seal_from_c: float | None, seal_to_c: float | None, steps: list[Step]) -> Cause | None:
+    """Largest difference by temperature, from hottest to coldest or from sealing to either.
+
+    Sealed at one temperature, two sides whose ranges differ may slip further than between their
+    extremes, where both may have moved alike.
+    """
     first, second = elements
     if not first.along_rate_mm_per_k and not second.along_rate_mm_per_k:
-        return 0.0
+        return None
 
     def difference(a_k: float, b_k: float) -> float:
         return abs(first.along_rate_mm_per_k * a_k - second.along_rate_mm_per_k * b_k)
 
-    cases = [(first.hot_c - first.cold_c, second.hot_c - second.cold_c)]
-    if not total_swing and seal_from_c is not None and seal_to_c is not None:
-        cases = [(first.hot_c - at, second.hot_c - at) for at in (seal_from_c, seal_to_c)]
-        cases += [(at - first.cold_c, at - second.cold_c) for at in (seal_from_c, seal_to_c)]
+    cases = [(first.hot_c - first.cold_c, second.hot_c - second.cold_c)] if seal_from_c is None or seal_to_c is None else []
+    low = max(first.cold_c, second.cold_c) if seal_from_c is None else seal_from_c
+    high = min(first.hot_c, second.hot_c) if seal_to_c is None else seal_to_c
+    for at in (low, high):
+        cases += [(first.hot_c - at, second.hot_c - at), (at - first.cold_c, at - second.cold_c)]
     a_k, b_k = max(cases, key=lambda case: difference(*case))
     slip = difference(a_k, b_k)
     steps.append(Step(
         "slip", "Sides slip along the joint", "s_T", "|α_A · L_along,A · ΔT_A − α_B · L_along,B · ΔT_B|", "|{a} × {L} × {p} − {b} × {M} × {q}|",
         {"a": Value(first.expansion_per_k, "expansion"), "L": Value(first.along_mm, "length"), "p": Value(a_k, "temperature_difference"),
          "b": Value(second.expansion_per_k, "expansion"), "M": Value(second.along_mm, "length"), "q": Value(b_k, "temperature_difference")},
-        Value(slip, "length"), "Definition: difference of the two sides' movement along the joint", DEFINITION,
+        Value(slip, "length"), _SLIP_SOURCE, DEFINITION,
     ))  # fmt: skip
-    return slip
+    return Cause("slip", "Sides slip along the joint", 0.0, 0.0, slip, _SLIP_SOURCE, 0.0)
+
+
+def _moisture_slip(elements: Sequence[Element], steps: list[Step]) -> Cause | None:
+    """Difference by moisture: lasting movement with its sign, wetting and drying as if each side were on its own."""
+    first, second = elements
+    lasting = abs(first.irreversible_fraction * first.along_mm - second.irreversible_fraction * second.along_mm)
+    swing = first.reversible_fraction * first.along_mm + second.reversible_fraction * second.along_mm
+    if not lasting and not swing:
+        return None
+    steps.append(Step(
+        "slip-moisture", "Sides slip by moisture", "s_m", "|I_A · L_along,A − I_B · L_along,B| + R_A · L_along,A + R_B · L_along,B", "|{i} × {L} − {j} × {M}| + {r} × {L} + {q} × {M}",
+        {"i": Value(first.irreversible_fraction, "percent"), "L": Value(first.along_mm, "length"), "j": Value(second.irreversible_fraction, "percent"),
+         "M": Value(second.along_mm, "length"), "r": Value(first.reversible_fraction, "percent"), "q": Value(second.reversible_fraction, "percent")},
+        Value(lasting + swing, "length"), _SLIP_SOURCE, DEFINITION, remark="Strains as for the movement across the joint.",
+    ))  # fmt: skip
+    return Cause("slip-moisture", "Sides slip by moisture", 0.0, 0.0, lasting + swing, _SLIP_SOURCE, 0.0)
 
 
 def _sums(kind: str, opening: float, closing: float, along: float, across: float, shear: float, rows: Sequence[Cause]) -> list[Step]:
@@ -231,6 +333,3 @@ def _sums(kind: str, opening: float, closing: float, along: float, across: float
             Value(shear, "length"), "Definition: two directions of slip at right angles", DEFINITION,
         ))  # fmt: skip
     return steps
-
-
-

@@ -54,16 +54,16 @@ def capability_of(row: Sealant | catalogue.MovementClass, convention: str) -> Ca
 
 def needs(movement: Movement, capability: Capability, closed_gap_mm: float) -> list[Need]:
     """The widths that each case asks for, unrounded; the largest governs."""
-    return needs_of(movement.opening_mm, movement.closing_mm, movement.shear_mm, capability, closed_gap_mm)
+    return needs_of(movement.opening_mm, movement.closing_mm, movement.shear_mm, movement.swing_mm, capability, closed_gap_mm)
 
 
-def needs_of(opening_mm: float, closing_mm: float, shear_mm: float, capability: Capability, closed_gap_mm: float) -> list[Need]:
-    """As `needs`, from the three movements. [mm]"""
+def needs_of(opening_mm: float, closing_mm: float, shear_mm: float, swing_mm: float, capability: Capability, closed_gap_mm: float) -> list[Need]:
+    """As `needs`, from the three movements and the total swing. [mm]"""
     found = []
     if capability.convention == TOTAL_SWING:
         assert capability.total_fraction is not None
         label = "total swing with shear" if shear_mm else "total swing"
-        found.append(Need("swing", label, strain.width_for_swing_mm(opening_mm, closing_mm, shear_mm, capability.total_fraction)))
+        found.append(Need("swing", label, strain.width_for_swing_mm(swing_mm, 0.0, shear_mm, capability.total_fraction)))
     else:
         assert capability.extension_fraction is not None and capability.compression_fraction is not None
         label = "opening with shear" if shear_mm and opening_mm else "shear" if shear_mm else "opening"
@@ -110,14 +110,14 @@ def tolerances(parts_mm: Mapping[str, float]) -> tuple[float, float]:
     return sum(parts_mm.values()), math.sqrt(sum(part * part for part in parts_mm.values()))
 
 
-def holds(width_mm: float, opening_mm: float, closing_mm: float, shear_mm: float, capability: Capability, closed_gap_mm: float) -> bool:
+def holds(width_mm: float, opening_mm: float, closing_mm: float, shear_mm: float, swing_mm: float, capability: Capability, closed_gap_mm: float) -> bool:
     """Whether a bead sealed at this width keeps its movements within the class."""
-    return use_of(width_mm, opening_mm, closing_mm, shear_mm, capability, closed_gap_mm) <= 1.0 + 1e-9
+    return use_of(width_mm, opening_mm, closing_mm, shear_mm, swing_mm, capability, closed_gap_mm) <= 1.0 + 1e-9
 
 
-def use_of(width_mm: float, opening_mm: float, closing_mm: float, shear_mm: float, capability: Capability, closed_gap_mm: float) -> float:
+def use_of(width_mm: float, opening_mm: float, closing_mm: float, shear_mm: float, swing_mm: float, capability: Capability, closed_gap_mm: float) -> float:
     """Share of the class that is used at a width: required width over present width."""
-    return governing(needs_of(opening_mm, closing_mm, shear_mm, capability, closed_gap_mm)).width_mm / width_mm
+    return governing(needs_of(opening_mm, closing_mm, shear_mm, swing_mm, capability, closed_gap_mm)).width_mm / width_mm
 
 
 def greatest_scale(width_mm: float, movement: Movement, capability: Capability, closed_gap_mm: float) -> float | None:
@@ -154,12 +154,13 @@ def greatest_scale(width_mm: float, movement: Movement, capability: Capability, 
         room = math.sqrt(slide * slide - movement.across_mm**2) if slide >= movement.across_mm else -1.0
         along = math.sqrt(max(0.0, movement.shear_mm**2 - movement.across_mm**2))
         limits.append((room - movement.entered_shear_mm, along - movement.entered_shear_mm))
-        fixed = (0.0, movement.entered_closing_mm, movement.across_mm)
-        if not holds(width_mm, fixed[0], fixed[1], fixed[2], capability, closed_gap_mm):
+        # The slide is in `limits`; here only what closing and the step across ask for by themselves.
+        if not holds(width_mm, 0.0, movement.entered_closing_mm, movement.across_mm, movement.entered_closing_mm, capability, closed_gap_mm):
             return None
     elif capability.convention == TOTAL_SWING:
         room = strain.allowed_opening_mm(width_mm, movement.shear_mm, capability.total_fraction or 0.0)
-        limits.append((room - movement.entered_opening_mm - movement.entered_closing_mm, by_length_open + by_length_close))
+        entered = movement.entered_opening_mm + movement.entered_closing_mm
+        limits.append((room - entered, movement.swing_mm - entered))
     else:
         room = strain.allowed_opening_mm(width_mm, movement.shear_mm, capability.extension_fraction or 0.0)
         limits.append((room - movement.entered_opening_mm, by_length_open))
@@ -179,12 +180,12 @@ def width_steps(movement: Movement, capability: Capability, class_label: str, cl
     for need in found:
         result = Value(need.width_mm, "length")
         if need.key == "swing":
-            total = Value(capability.total_fraction, "number")
+            total, swing = Value(capability.total_fraction, "number"), Value(movement.swing_mm, "length")
             if movement.shear_mm:
-                steps.append(Step("width-swing", f"Width for the swing, {class_label}, total swing", "w_t", "[m + √(m² + K (m² + s²))] / K, m = o + c, K = (1 + C)² − 1",
-                                  "with m = {o} + {c}, s = {s}, C = {C}", {"o": opening, "c": closing, "s": shear, "C": total}, result, _SWING_SOURCE + "; shear added as in the each-way form", READ))  # fmt: skip
+                steps.append(Step("width-swing", f"Width for the swing, {class_label}, total swing", "w_t", "[m + √(m² + K (m² + s²))] / K, K = (1 + C)² − 1",
+                                  "[{m} + √(({m})² + K × (({m})² + ({s})²))] / K with C = {C}", {"m": swing, "s": shear, "C": total}, result, _SWING_SOURCE + "; shear joined to it as in the each-way form, a definition of ours", DEFINITION))  # fmt: skip
             else:
-                steps.append(Step("width-swing", f"Width for the swing, {class_label}, total swing", "w_t", "(o + c) / C", "({o} + {c}) / {C}", {"o": opening, "c": closing, "C": total}, result, _SWING_SOURCE, READ))
+                steps.append(Step("width-swing", f"Width for the swing, {class_label}, total swing", "w_t", "m / C", "{m} / {C}", {"m": swing, "C": total}, result, _SWING_SOURCE, READ))
         elif need.key == "closing":
             steps.append(Step("width-closing", f"Width for closing, {class_label}", "w_c", "c / S_c", "{c} / {S}", {"c": closing, "S": Value(capability.compression_fraction, "number")}, result, _COMPRESSION_SOURCE, DEFINITION))
         elif need.key == "closed-gap":
@@ -202,9 +203,9 @@ def _opening_step(need: Need, opening: Value, shear: Value, capability: Capabili
     if need.key == "opening":
         return Step("width-opening", f"Width for opening, {class_label}", "w_o", "o / S_e", "{o} / {S}", {"o": opening, "S": extension}, result, _COMPRESSION_SOURCE, DEFINITION)
     if need.key == "shear":
-        return Step("width-shear", f"Width for shear, {class_label}", "w_s", "s / √(2 S_e + S_e²)", "{s} / √(2 × {S} + {S}²)", {"s": shear, "S": extension}, result, _EXTENSION_SOURCE, READ)
+        return Step("width-shear", f"Width for shear, {class_label}", "w_s", "s / √(2 S_e + S_e²)", "{s} / √(2 × {S} + {S}²)", {"s": shear, "S": extension}, result, _EXTENSION_SOURCE, DEFINITION)
     return Step("width-opening-shear", f"Width for opening with shear, {class_label}", "w_os", "[o + √(o² + K (o² + s²))] / K, K = (1 + S_e)² − 1",
-                "[{o} + √(({o})² + K × (({o})² + ({s})²))] / K with S_e = {S}", {"o": opening, "s": shear, "S": extension}, result, _EXTENSION_SOURCE, READ)  # fmt: skip
+                "[{o} + √(({o})² + K × (({o})² + ({s})²))] / K with S_e = {S}", {"o": opening, "s": shear, "S": extension}, result, _EXTENSION_SOURCE, DEFINITION)  # fmt: skip
 
 
 def tolerance_steps(parts_mm: Mapping[str, float], worst_mm: float, rss_mm: float, required_mm: float, design_mm: float, increment_mm: float, chosen_mm: float) -> list[Step]:

@@ -72,11 +72,7 @@ def find_window(width_mm: float, movement: Movement, capability: Capability, clo
     low_c, high_c = movement.cold_c, movement.hot_c
     rate = movement.rate_mm_per_k
     if capability.convention == TOTAL_SWING or rate == 0.0:
-        opening, closing, shear = movement.at(*(low_c for _ in movement.elements))
-        fits = holds(width_mm, opening, closing, shear, capability, closed_gap_mm)
-        if fits:
-            return Window(low_c, high_c, "element", "element", "")
-        return Window(None, None, "swing", "swing", "The swing is too large at any sealing temperature: a wider joint, a higher class or shorter elements.")
+        return _window_of_swing(width_mm, movement, capability, closed_gap_mm)
     open_slack, close_slack = _slack(width_mm, movement, capability, closed_gap_mm)
     to_c = (open_slack - movement.fixed_opening_mm + sum(item.rate_mm_per_k * item.cold_c for item in movement.elements)) / rate
     from_c = (sum(item.rate_mm_per_k * item.hot_c for item in movement.elements) + movement.fixed_closing_mm - close_slack) / rate
@@ -93,6 +89,23 @@ def find_window(width_mm: float, movement: Movement, capability: Capability, clo
         max(from_c, low_c), min(to_c, high_c),
         "closing" if from_c > low_c else "element", "opening" if to_c < high_c else "element", "",
     )  # fmt: skip
+
+
+def _window_of_swing(width_mm: float, movement: Movement, capability: Capability, closed_gap_mm: float) -> Window:
+    """Everything or nothing as far as the class goes; a gap that must stay open sets a lower end."""
+    low_c, high_c, rate = movement.cold_c, movement.hot_c, movement.rate_mm_per_k
+    at = tuple(item.cold_c for item in movement.elements)
+    opening, closing, shear = movement.at(*at)
+    gap_by_temperature = closed_gap_mm if rate > 0.0 and movement.kind != "lap" else 0.0
+    if not holds(width_mm, opening, closing, shear, movement.swing_at(*at), capability, 0.0 if gap_by_temperature else closed_gap_mm):
+        return Window(None, None, "swing", "swing", "The swing is too large at any sealing temperature: a wider joint, a higher class or shorter elements.")
+    if gap_by_temperature:
+        from_c = (sum(item.rate_mm_per_k * item.hot_c for item in movement.elements) + movement.fixed_closing_mm - (width_mm - closed_gap_mm)) / rate
+        if from_c > high_c:
+            return Window(None, None, "closing", "element", "The least closed gap is lost even when sealed at the hottest: a wider joint or shorter elements.")
+        if from_c > low_c:
+            return Window(from_c, high_c, "closing", "element", "")
+    return Window(low_c, high_c, "element", "element", "")
 
 
 def window_steps(width_mm: float, movement: Movement, capability: Capability, closed_gap_mm: float, window: Window) -> list[Step]:

@@ -169,7 +169,7 @@ def _at_width(judged: Judgement, project: Project, mean: float, least: float, mo
         checks.append(Check("class", None, STOP, None, None))
         return answer
     opening, closing, shear = movement.at(*temperatures)
-    use = width.use_of(least, opening, closing, shear, capability, gap)
+    use = width.use_of(least, opening, closing, shear, movement.swing_at(*temperatures), capability, gap)
     checks.append(Check("class", use <= 1.0 + 1e-9, STOP if found.is_empty else WAIT, Value(use, "percent"), Value(1.0, "percent")))
     lap = movement.kind == "lap"
     cold, hot = (mean, mean) if lap else (mean + opening, max(0.0, mean - closing))

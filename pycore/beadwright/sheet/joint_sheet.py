@@ -135,7 +135,7 @@ def _figures(judged: Judgement) -> dict[str, Any]:
     rule = judged.depth_rule
     return {
         "movement": {
-            "opening_mm": movement.opening_mm, "closing_mm": movement.closing_mm, "shear_mm": movement.shear_mm,
+            "opening_mm": movement.opening_mm, "closing_mm": movement.closing_mm, "shear_mm": movement.shear_mm, "swing_mm": movement.swing_mm,
             "hot_c": movement.hot_c, "cold_c": movement.cold_c, "rate_mm_per_k": movement.rate_mm_per_k,
             "causes": [{"key": row.key, "label": row.label, "opening_mm": row.opening_mm, "closing_mm": row.closing_mm, "shear_mm": row.shear_mm, "source": row.source} for row in movement.rows],
         },
