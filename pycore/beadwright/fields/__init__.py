@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
+from .cure import CURE, CUT, ROOM, SEALED, TWO_PART, WEATHER
 from .job import JOB, SEALANT, SITE
 from .joint import CAUSE, FACE, JOINT, SIDE
 from .reader import Reads, Tables, read_group
 from .spec import Choice, Field, Group
 from .takeoff import EXTRA, PACK, RATE, RUN, TAKEOFF
 
-__all__ = ["CAUSE", "EXTRA", "FACE", "GROUPS", "JOB", "JOINT", "PACK", "RATE", "RUN", "SEALANT", "SIDE", "SITE", "TAKEOFF", "Choice", "Field", "Group", "Reads", "Tables", "group", "read_group"]
+__all__ = ["CAUSE", "CURE", "CUT", "EXTRA", "FACE", "GROUPS", "JOB", "JOINT", "PACK", "RATE", "ROOM", "RUN", "SEALANT", "SEALED", "SIDE", "SITE", "TAKEOFF", "TWO_PART", "WEATHER", "Choice", "Field", "Group", "Reads", "Tables", "group", "read_group"]
 
-GROUPS: tuple[Group, ...] = (JOB, SITE, SEALANT, JOINT, SIDE, CAUSE, FACE, TAKEOFF, RUN, PACK, EXTRA, RATE)
+GROUPS: tuple[Group, ...] = (JOB, SITE, SEALANT, JOINT, SIDE, CAUSE, FACE, TAKEOFF, RUN, PACK, EXTRA, RATE, CURE, SEALED, WEATHER, CUT, TWO_PART, ROOM)
 
 
 def group(key: str) -> Group:

@@ -11,7 +11,7 @@ import json
 from pathlib import Path
 from typing import Any
 
-from ..fields import CAUSE, EXTRA, FACE, JOB, JOINT, PACK, RATE, RUN, SEALANT, SIDE, SITE, TAKEOFF, Field, Group
+from ..fields import CAUSE, CURE, CUT, EXTRA, FACE, JOB, JOINT, PACK, RATE, ROOM, RUN, SEALANT, SEALED, SIDE, SITE, TAKEOFF, TWO_PART, WEATHER, Field, Group
 from .limits import FORMAT, MAX_JOINTS, MAX_TEXT, VERSION
 
 PATH = Path(__file__).with_name(f"beadwright-job-{VERSION}.schema.json")
@@ -61,7 +61,7 @@ def build() -> dict[str, Any]:
             "sealants": _rows(_of_group(SEALANT)),
             "joints": _rows(joint),
             "takeoff": _of_group(TAKEOFF, runs=_rows(_of_group(RUN)), packs=_rows(_of_group(PACK), 200), extras=_rows(_of_group(EXTRA), 200), rates=_rows(_of_group(RATE), 200)),
-            "cure": {"type": "object"},
+            "cure": _of_group(CURE, sealed=_rows(_of_group(SEALED)), weather=_rows(_of_group(WEATHER)), cuts=_rows(_of_group(CUT), 200), two_part=_rows(_of_group(TWO_PART), 200), room=_of_group(ROOM)),
             "surveys": {"type": "array", "items": {"type": "object"}},
         },
         "$defs": {"side": _of_group(SIDE)},
