@@ -148,7 +148,7 @@ def test_undo_goes_back_through_every_step_and_outlives_a_reload(tablet, site):
 
 def test_joints_are_copied_moved_removed_and_brought_back(tablet, site):
     page = shell.demo(tablet, site.url)
-    names = page.locator(".joints .row-link")
+    names = page.locator(".joints .row-name")
     before = names.all_inner_texts()
     page.get_by_test_id("arrange").click()
     page.get_by_role("button", name=f"Move down {before[0]}").click()
@@ -290,7 +290,7 @@ def test_text_of_a_job_is_never_markup(tablet, site, tmp_path):
 
 def test_a_full_journey_breaks_no_policy(tablet, site):
     page = shell.demo(tablet, site.url)
-    for name in page.locator(".joints .row-link").all_inner_texts()[:3]:
+    for name in page.locator(".joints .row-name").all_inner_texts()[:3]:
         page.get_by_role("link", name="Wall", exact=True).click()
         page.locator(".joints .row-link", has_text=name).click()
         expect(page.get_by_test_id("drawing").locator("svg")).to_be_visible()

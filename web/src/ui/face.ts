@@ -32,7 +32,10 @@ export function facePage(app: App, forms: Forms, id: string): TemplateResult {
       ${answer === undefined ? waiting(app) : verdict(face === null ? unmeasured(answer) : faceVerdict(face), app.state.isStale)}
       ${answer !== undefined && app.state.coreFault !== null ? waiting(app) : nothing}
     </div>
-    <div class="inputs" role="region" aria-label="Measured now" tabindex="-1">${form(app, forms, group, `${base}/face`, { isGlove: true })}</div>
+    <div class="inputs" role="region" aria-label="Measured now" tabindex="-1">
+      <h2 class="hidden-word">Measured now</h2>
+      ${form(app, forms, group, `${base}/face`, { isGlove: true })}
+    </div>
     <div class="face-rest">
       ${face === null ? nothing : reasons(app, face, id)} ${issueList(app, (issue) => issue.path.startsWith(`${base}/`))}
     </div>
@@ -51,6 +54,7 @@ function faceVerdict(face: FaceAnswer): VerdictParts {
 
 function reasons(app: App, face: FaceAnswer, id: string): TemplateResult {
   return html`${face.checks.length > 0 ? html`<ul class="checks" data-testid="checks">${face.checks.map(checkRow)}</ul>` : nothing}
+  <h2 class="hidden-word">Answers</h2>
   ${bands(face.answers)} ${workingPart(app, face.steps, `face working ${id}`)}`;
 }
 

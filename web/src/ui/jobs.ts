@@ -65,7 +65,7 @@ function list(app: App, jobs: JobSummary[]): TemplateResult {
 function removal(app: App, job: JobSummary): TemplateResult {
   const title = job.title || "Untitled job";
   if (app.state.asking !== job.id) {
-    return html`<button type="button" class="plain" aria-label="Put ${title} in the bin" @click=${() => app.update({ asking: job.id })}>To the bin</button>`;
+    return html`<button type="button" class="plain" aria-label="To the bin: ${title}" @click=${() => app.update({ asking: job.id })}>To the bin</button>`;
   }
   return html`<button type="button" class="danger" @click=${() => void removeJob(app, job.id, title)}>Yes, to the bin</button>
     <button type="button" class="plain" @click=${() => app.update({ asking: null })}>Keep</button>`;

@@ -118,7 +118,10 @@ function scrubber(app: App, frames: Frame[], at: number, start: number): Templat
 function answersOf(app: App, answer: JointAnswer, id: string): TemplateResult {
   const own = (app.state.result?.evaluation.cautions ?? []).filter((item) => answer.cautions?.includes(item.id));
   return html`
-    ${answer.answers && answer.answers.length > 0 ? html`<section aria-label="Answers" class=${app.state.isStale ? "is-stale" : ""}>${bands(answer.answers)}</section>` : nothing}
+    ${answer.answers && answer.answers.length > 0 ? html`<section aria-labelledby="answers-title" class=${app.state.isStale ? "is-stale" : ""}>
+          <h2 id="answers-title" class="hidden-word">Answers</h2>
+          ${bands(answer.answers)}
+        </section>` : nothing}
     ${notes(answer.notes ?? [])}
     ${own.length > 0 ? html`<section class="part" aria-labelledby="own-cautions"><h2 id="own-cautions">Take care</h2>${cautionsPart(app, own, id, false)}</section>` : nothing}
     <div class="drawers">${tableDrawers(app, answer.tables ?? [], id)} ${workingPart(app, answer.steps ?? [], `working ${id}`)}</div>

@@ -119,8 +119,9 @@ function row(app: App, joint: Row, index: number, answer: JointAnswer | undefine
   return html`<tr data-testid="joint-row-${id}">
     <td class="num mark-no">${index + 1}</td>
     <th scope="row">
-      <a class="row-link" href=${href({ page: "joint", job: app.open.id, joint: id })}>${name}</a>
-      <span class="row-sub">${[kindWord(app, joint), place].filter(Boolean).join(" · ")}</span>
+      <a class="row-link" href=${href({ page: "joint", job: app.open.id, joint: id })}>
+        <span class="row-name">${name}</span> <span class="row-sub">${[kindWord(app, joint), place].filter(Boolean).join(" · ")}</span>
+      </a>
     </th>
     <td>${answer ? smallVerdict(answer.verdict, answer.verdict_word) : html`<span class="row-sub">not worked yet</span>`}</td>
     ${app.state.isArranging ? html`<td class="row-actions">${arrange(app, index, name, total)}</td>` : headline(answer)}

@@ -46,6 +46,9 @@ const WIDGETS: Readonly<Record<string, Widget>> = {
   duration: quantityWidget,
   irradiance: quantityWidget,
   film: quantityWidget,
+  volume: quantityWidget,
+  pace: quantityWidget,
+  coverage: quantityWidget,
 };
 
 export function widgetFor(kind: string): Widget {
