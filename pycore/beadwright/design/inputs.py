@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from typing import Any
 
-from attrs import field, frozen
+from attrs import evolve, field, frozen
 
 from .. import catalogue
 from ..fields import CAUSE, FACE, JOB, JOINT, SEALANT, SIDE, SITE, Reads, Tables, read_group
@@ -14,6 +14,8 @@ from ..quantity import INCH, METRIC, show
 from ..working import Issue
 
 OWN_CLASS = "own"
+# Site fields that no width rests on, or whose absence is answered where they are needed.
+_NOT_DECIDING = ("place", "summer_air", "winter_air", "reference", "dew_margin", "green_limit", "building_year")
 
 
 @frozen
@@ -29,6 +31,7 @@ class Sealant:
     extension_fraction: float | None
     compression_fraction: float | None
     total_fraction: float | None
+    has_errors: bool
     values: Mapping[str, Any]
 
 
@@ -86,10 +89,10 @@ def read_project(job: object) -> Project:
     head = read_group(JOB, {key: raw.get(key) for key in (item.key for item in JOB.fields)}, "", reads, tables)
     if not head["title"]:
         reads.add(Issue("/title", "missing", "warning", "The job has no title yet."))
-    before = _error_count(reads)
     site = read_group(SITE, raw.get("site"), "/site", reads, tables)
     _check_site(site, reads)
-    site_has_errors = _error_count(reads) > before
+    deciding = {"/site", *(f"/site/{item.key}" for item in SITE.fields if item.key not in _NOT_DECIDING)}
+    site_has_errors = any(issue.severity == "error" and issue.path in deciding for issue in reads.issues)
     sealants = {item.id: item for item in _read_sealants(raw.get("sealants"), reads, tables)}
     tables["sealants"] = sealants
     return Project(system, head["region"] or "other", head, site, site_has_errors, sealants, tables, reads)
@@ -167,11 +170,13 @@ def _read_sealants(raw: object, reads: Reads, tables: Tables) -> Iterator[Sealan
         path = f"/sealants/{index}"
         name = _row_id(row, path, "sealant", taken, reads)
         taken.add(name)
+        before = _error_count(reads)
         values = read_group(SEALANT, row, path, reads, tables)
         for key in ("family", "class"):
             if values[key] is None and not _has_issue(reads, f"{path}/{key}"):
                 reads.add(Issue(f"{path}/{key}", "missing", "error", f"{SEALANT[key].label} of the sealant is not chosen yet."))
-        yield _sealant(name, values, path, reads)
+        sealant = _sealant(name, values, path, reads)
+        yield evolve(sealant, has_errors=_error_count(reads) > before)
 
 
 def _has_issue(reads: Reads, path: str) -> bool:
@@ -193,7 +198,7 @@ def _sealant(name: str, values: Mapping[str, Any], path: str, reads: Reads) -> S
         total = values["own_total"] if values["own_total"] is not None else row.total_fraction if row else None
         label, source = (row.label, row.source) if row else ("No class", "")
     family = catalogue.families().get(values["family"]) if values["family"] else None
-    return Sealant(name, values["name"] or name, family, chosen, label, source, extension, compression, total, values)
+    return Sealant(name, values["name"] or name, family, chosen, label, source, extension, compression, total, False, values)
 
 
 def joint_rows(job: object, reads: Reads) -> Iterator[tuple[str, str, Mapping[str, Any]]]:

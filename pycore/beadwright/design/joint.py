@@ -56,6 +56,7 @@ class Widths:
     other_convention: str
     length_scale: float | None
     increment_mm: float
+    by_rss: bool
 
 
 @frozen
@@ -106,6 +107,10 @@ def judge(joint: JointInput, project: Project) -> Judgement:
         return Judgement(joint, sealant, use, REFERRED, use.referral_text)
     if joint.has_errors:
         return Judgement(joint, sealant, use, UNKNOWN, "Something is missing or wrong; see the marked fields.")
+    if project.site_has_errors:
+        return Judgement(joint, sealant, use, UNKNOWN, "A setting of the site is wrong; see the marked fields there.")
+    if sealant is not None and sealant.has_errors:
+        return Judgement(joint, sealant, use, UNKNOWN, "A figure of the sealant is missing or wrong; see the marked fields there.")
     if sealant is None or use is None:
         return Judgement(joint, sealant, use, UNKNOWN, "The sealant or the use is not chosen yet.")
     capability = width.capability_of(sealant, project.site["convention"] or width.EACH_WAY)
@@ -261,7 +266,7 @@ def _widths(joint: JointInput, project: Project, sealant: Sealant, capability: w
     scale = width.greatest_scale(judged, movement, capability, gap) if judged > 0 else None
     return Widths(
         tuple(found), top, top.width_mm, parts, worst, rss, design(top.width_mm, worst), design(top.width_mm, rss), designed,
-        least, least_name, most, most_name, present, judged, use, classes, smallest, other_required, other, scale, increment,
+        least, least_name, most, most_name, present, judged, use, classes, smallest, other_required, other, scale, increment, by_rss,
     )  # fmt: skip
 
 

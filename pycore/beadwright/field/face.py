@@ -39,6 +39,7 @@ class FaceAnswer:
     most_mm: float | None = None
     surface_c: tuple[float, float] | None = None
     cold_width_mm: float | None = None
+    slip_mm: float | None = None
     hot_width_mm: float | None = None
     cold_strain_fraction: float | None = None
     hot_strain_fraction: float | None = None
@@ -130,8 +131,7 @@ def _temperature_checks(judged: Judgement, temperatures: tuple[float, float] | N
 def _dew(face: Mapping[str, Any], surface: float | None, project: Project, checks: list[Check], steps: list[Step]) -> float | None:
     air, damp = face["air"], face["humidity"]
     margin = project.site["dew_margin"]
-    margin = 3.0 if margin is None else margin
-    if air is None or damp is None or damp <= 0.0:
+    if air is None or damp is None or damp <= 0.0 or margin is None:
         checks.append(Check("dew", None, WAIT, None, Value(margin, "temperature_difference")))
         return None
     dew = humidity.dew_point_c(air, damp)
@@ -158,12 +158,14 @@ def _at_width(judged: Judgement, project: Project, mean: float, least: float, mo
     assert movement is not None and capability is not None and widths is not None
     gap = project.site["closed_gap"] or 0.0
     found = window.find_window(least, movement, capability, gap)
-    rod_type = project.tables["rod_types"][judged.joint.values["rod"] or "closed-cell"]
-    answer: dict[str, Any] = {
-        "window": found,
-        "rod": backing.choose(rod_type, project.site["rod_series"] or "metric", least, most),
-        "depth": judged.depth_rule and depth.depth_by_rule(judged.depth_rule.rule, mean, is_porous=any(item.substrate.is_porous for item in judged.elements)),
-    }
+    lap = movement.kind == "lap"
+    answer: dict[str, Any] = {"window": found}
+    if not lap:
+        rod_type = project.tables["rod_types"][judged.joint.values["rod"] or "closed-cell"]
+        answer |= {
+            "rod": backing.choose(rod_type, project.site["rod_series"] or "metric", least, most),
+            "depth": judged.depth_rule and depth.depth_by_rule(judged.depth_rule.rule, mean, is_porous=any(item.substrate.is_porous for item in judged.elements)),
+        }
     _limits(widths, least, most, checks)
     if temperatures is None:
         checks.append(Check("class", None, STOP, None, None))
@@ -171,7 +173,6 @@ def _at_width(judged: Judgement, project: Project, mean: float, least: float, mo
     opening, closing, shear = movement.at(*temperatures)
     use = width.use_of(least, opening, closing, shear, movement.swing_at(*temperatures), capability, gap)
     checks.append(Check("class", use <= 1.0 + 1e-9, STOP if found.is_empty else WAIT, Value(use, "percent"), Value(1.0, "percent")))
-    lap = movement.kind == "lap"
     cold, hot = (mean, mean) if lap else (mean + opening, max(0.0, mean - closing))
     opened = strain.stretch_fraction(mean, opening, shear)
     closed = strain.stretch_fraction(mean, -min(closing, 0.999 * mean), shear if lap else 0.0)
@@ -179,20 +180,21 @@ def _at_width(judged: Judgement, project: Project, mean: float, least: float, mo
     change = sum(item.rate_mm_per_k * (reference - at) for item, at in zip(movement.elements, temperatures, strict=True))
     answer |= {
         "cold_width_mm": cold, "hot_width_mm": hot, "cold_strain_fraction": opened, "hot_strain_fraction": closed,
-        "reference_c": reference, "reference_width_mm": None if lap else mean - change,
+        "slip_mm": shear if lap else None, "reference_c": reference, "reference_width_mm": None if lap else mean - change,
     }  # fmt: skip
     now, rate = Value(mean, "length"), Value(movement.rate_mm_per_k, "rate")
+    surface = sum(item.rate_mm_per_k * at for item, at in zip(movement.elements, temperatures, strict=True)) / movement.rate_mm_per_k if movement.rate_mm_per_k else temperatures[0]
     if not lap:
         steps += [
             Step("face-cold", "Width at the coldest", "w_cold", "w + o", "{w} + {o}", {"w": now, "o": Value(opening, "length")}, Value(cold, "length"), "Definition: opening from the surface temperature now", DEFINITION),
             Step("face-hot", "Width at the hottest", "w_hot", "w − c", "{w} − {c}", {"w": now, "c": Value(closing, "length")}, Value(hot, "length"), "Definition: closing from the surface temperature now", DEFINITION),
             Step("face-reference", "Width brought to the reference temperature", "w_ref", "w − Σ(α L) (T_ref − T_s)", "{w} − {r} × ({T} − {s})",
-                 {"w": now, "r": rate, "T": Value(reference, "temperature"), "s": Value(sum(temperatures) / 2, "temperature")}, Value(mean - change, "length"),
-                 "Definition: the elements grow as they warm, so the joint narrows", DEFINITION, remark="Each side with its own temperature." if temperatures[0] != temperatures[1] else ""),
+                 {"w": now, "r": rate, "T": Value(reference, "temperature"), "s": Value(surface, "temperature")}, Value(mean - change, "length"),
+                 "Definition: the elements grow as they warm, so the joint narrows", DEFINITION, remark="T_s is the sides' mean, weighted by α L." if temperatures[0] != temperatures[1] else ""),
         ]  # fmt: skip
     steps.append(Step("face-strain", "Average strain at the coldest", "ε", "√((w + o)² + s²) / w − 1", "√(({w} + {o})² + ({s})²) / {w} − 1",
                       {"w": now, "o": Value(opening, "length"), "s": Value(shear, "length")}, Value(opened, "percent"), "Definition: stretch of the line across the bead", DEFINITION))  # fmt: skip
-    _green(movement, project, mean, face, checks, steps, answer)
+    _green(movement, project, least, face, checks, steps, answer)
     return answer
 
 
@@ -203,13 +205,17 @@ def _limits(widths: Any, least: float, most: float, checks: list[Check]) -> None
         checks.append(Check("width-most", most <= widths.practical_most_mm + 1e-9, STOP, Value(most, "length"), Value(widths.practical_most_mm, "length")))
 
 
-def _green(movement: Any, project: Project, mean: float, face: Mapping[str, Any], checks: list[Check], steps: list[Step], answer: dict[str, Any]) -> None:
+def _green(movement: Any, project: Project, least: float, face: Mapping[str, Any], checks: list[Check], steps: list[Step], answer: dict[str, Any]) -> None:
     swing, limit = face["day_swing"], project.site["green_limit"]
-    if swing is None or limit is None:
+    if swing is None:
         return
-    share = movement.rate_mm_per_k * swing / mean
+    if limit is None:
+        checks.append(Check("green", None, WAIT, None, None))
+        return
+    # The narrowest place works the bead hardest.
+    share = movement.rate_mm_per_k * swing / least
     answer["green_fraction"] = share
     steps.append(Step("green", "Movement while green", "g", "Σ(α L) · ΔT_day / w", "{r} × {T} / {w}",
-                      {"r": Value(movement.rate_mm_per_k, "rate"), "T": Value(swing, "temperature_difference"), "w": Value(mean, "length")},
+                      {"r": Value(movement.rate_mm_per_k, "rate"), "T": Value(swing, "temperature_difference"), "w": Value(least, "length")},
                       Value(share, "percent"), "Limit by common practice, from memory; no standard gives one", MEMORY))  # fmt: skip
     checks.append(Check("green", share <= limit + 1e-9, WAIT, Value(share, "percent"), Value(limit, "percent")))
