@@ -14,6 +14,15 @@ DEFINITION = "definition"
 ENTERED = "entered"
 
 
+# From the best-founded to the least: a result is founded no better than its weakest part.
+_WEAKNESS = {READ: 0, DEFINITION: 0, "derived": 0, ENTERED: 1, COMMON_PRACTICE: 2, MEMORY: 3}
+
+
+def weakest(*statuses: str) -> str:
+    """The status of a result that rests on parts with these; the first of equals."""
+    return max(statuses, key=lambda status: _WEAKNESS.get(status, 3))
+
+
 class InputError(ValueError):
     """Something the user can put right; `code` is stable, the text is for people."""
 

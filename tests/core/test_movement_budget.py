@@ -35,7 +35,7 @@ def test_total_swing_verdict_once_said_beyond_while_the_window_said_any_temperat
     share = RANGE_MM / 0.25 / 17
     assert joint["verdict"] == "at-limit" and joint["width"]["use_fraction"] == pytest.approx(share)
     assert (joint["window"]["from_c"], joint["window"]["to_c"]) == (-20, 50)
-    assert next(check for check in joint["face"]["checks"] if check["key"] == "class")["value"] == f"{100 * share:.1f} %"
+    assert next(check for check in joint["face"]["checks"] if check["key"] == "class")["value"] == f"{math.ceil(1000 * share) / 10:.1f} %"
 
 
 def test_least_closed_gap_limits_the_window_of_a_total_swing():

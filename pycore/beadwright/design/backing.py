@@ -67,6 +67,9 @@ def choose(rod_type: catalogue.RodType, series: str, width_least_mm: float, widt
     most = section.rod_compression_fraction(width_least_mm, size.diameter_mm)
     fits = len(bands) == 1 or most <= rod_type.compression_high_fraction + 1e-9
     advice = "" if fits else "One size cannot serve the whole range: choose by the width found at each place."
+    if least > rod_type.compression_high_fraction + 1e-9:
+        usual = f"{100 * rod_type.compression_low_fraction:.0f} to {100 * rod_type.compression_high_fraction:.0f} %"
+        advice = f"{advice} No stock size is squeezed by the usual {usual} here; this is the next one up. Try it on site.".strip()
     return Backing(rod_type.id, rod_type.label, size.diameter_mm, size.size_label, least, most, fits, advice, bands)
 
 

@@ -18,6 +18,7 @@ class RuleDepth:
     most_mm: float
     covers_width: bool
     width_note: str
+    target: catalogue.Depth
 
 
 def _length(part: catalogue.Depth, width_mm: float) -> float:
@@ -51,7 +52,7 @@ def depth_by_rule(rule: catalogue.DepthRule, width_mm: float, *, is_porous: bool
     elif not covered:
         note = "outside its widths"
     least, target, most = (_length(part, width_mm) for part in (band.least, band.target, band.most))
-    return RuleDepth(rule, least, target, most, covered, note)
+    return RuleDepth(rule, least, target, most, covered, note, band.target)
 
 
 def all_rules(width_mm: float, *, is_porous: bool) -> list[RuleDepth]:
@@ -68,9 +69,14 @@ def agrees(target_mm: float, other: RuleDepth) -> bool:
 def depth_step(chosen: RuleDepth, width_mm: float, *, is_porous: bool) -> Step:
     """Working of the depth."""
     faces = "porous" if is_porous else "non-porous"
+    part = chosen.target
+    inputs = {"w": Value(width_mm, "length"), "least": Value(chosen.least_mm, "length"), "most": Value(chosen.most_mm, "length")}
+    template = "{d}" if part.mm is not None else "{r} × {w}"
+    inputs |= {"d": Value(part.mm, "length"), "r": Value(part.ratio, "number"), "f": Value(part.floor_mm, "length"), "c": Value(part.cap_mm, "length")}
+    template += (", not under {f}" if part.floor_mm is not None else "") + (", not over {c}" if part.cap_mm is not None else "")
     return Step(
         "depth", f"Depth at mid-width, {chosen.rule.label}", "d", f"rule set at width w, {faces} faces",
-        "with w = {w}: {least} to {most}", {"w": Value(width_mm, "length"), "least": Value(chosen.least_mm, "length"), "most": Value(chosen.most_mm, "length")},
+        f"{template}; allowed at w = {{w}}: {{least}} to {{most}}", inputs,
         Value(chosen.target_mm, "length"), chosen.rule.source, chosen.rule.status,
     )  # fmt: skip
 

@@ -14,7 +14,7 @@ from attrs import frozen
 
 from .. import catalogue
 from ..physics import thermal
-from ..working import DEFINITION, ENTERED, MEMORY, READ, Step, Value
+from ..working import DEFINITION, ENTERED, MEMORY, READ, Step, Value, weakest
 from .inputs import JointInput, Project
 
 SHARE_BY_FIXITY = {"middle": 0.5, "far-end": 1.0, "near-end": 0.0}
@@ -125,19 +125,19 @@ def _hot(values: Mapping[str, Any], mark: str, substrate: catalogue.Substrate, p
         return float(air)
     share, source, status = absorption(values, substrate)
     if project.site["temperature_method"] == "sol-air":
-        return _hot_sol_air(air, share, source, mark, project, steps)
+        return _hot_sol_air(air, share, source, status, mark, project, steps)
     mass = substrate.heat_group if values["mass"] in (None, "auto") else values["mass"]
     row = catalogue.heat_constants()[f"{mass}-{'reflected' if values['sun'] == 'reflected' else 'open'}"]
     hot = thermal.summer_surface_c(air, share, row.heat_rise_k)
     steps.append(Step(
         f"hot-{mark}", title, symbol, "T_air + A · H", "{T} + {A} × {H}",
         {"T": Value(air, "temperature"), "A": Value(share, "number"), "H": Value(row.heat_rise_k, "temperature_difference")},
-        Value(hot, "temperature"), f"Tabulated sun method, {_MASS_WORD[mass]} material: {row.source}. A: {source}", row.status if status == READ else status,
+        Value(hot, "temperature"), f"Tabulated sun method, {_MASS_WORD[mass]} material: {row.source}. A: {source}", weakest(row.status, status),
     ))  # fmt: skip
     return hot
 
 
-def _hot_sol_air(air: float, share: float, source: str, mark: str, project: Project, steps: list[Step]) -> float | None:
+def _hot_sol_air(air: float, share: float, source: str, status: str, mark: str, project: Project, steps: list[Step]) -> float | None:
     site = project.site
     if site["irradiance"] is None or site["film"] is None or site["longwave"] is None:
         return None
@@ -146,7 +146,7 @@ def _hot_sol_air(air: float, share: float, source: str, mark: str, project: Proj
         f"hot-{mark}", f"Side {mark}: hottest, sol-air", f"T_hot,{mark}", "T_air + A · I / h_o − ΔT_sky", "{T} + {A} × {I} / {h} − {k}",
         {"T": Value(air, "temperature"), "A": Value(share, "number"), "I": Value(site["irradiance"], "irradiance"),
          "h": Value(site["film"], "film"), "k": Value(site["longwave"], "temperature_difference")},
-        Value(hot, "temperature"), f"Sol-air temperature, general heat-transfer practice. A: {source}", READ,
+        Value(hot, "temperature"), f"Sol-air balance, from a secondary page citing ASHRAE. A: {source}", weakest(READ, status),
     ))  # fmt: skip
     return hot
 

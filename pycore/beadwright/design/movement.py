@@ -144,7 +144,9 @@ def budget(kind: str, elements: Sequence[Element], causes: Sequence[Mapping[str,
         opening, closing, along = moved_opening + entered_opening, moved_closing + entered_closing, slip + entered_shear
     shear = strain.combined_shear_mm(along, across)
     rows += entered
-    steps += _sums(kind, opening, closing, along, across, shear, rows)
+    along_parts = [along] if kind == "lap" else [row.shear_mm for row in slips] + [cause["shear"] for cause in causes]
+    across_parts = ([row.shear_mm for row in slips] if kind == "lap" else []) + [cause["shear_across"] for cause in causes]
+    steps += _sums(kind, opening, closing, [part for part in along_parts if part], [part for part in across_parts if part], shear, rows)
     swing += entered_opening + entered_closing
     if total_swing and kind != "lap":
         steps.append(_swing_step(elements, seal_from_c, seal_to_c, [row for row in rows if not row.key.startswith("thermal-")], swing))
@@ -313,7 +315,7 @@ def _moisture_slip(elements: Sequence[Element], steps: list[Step]) -> Cause | No
     return Cause("slip-moisture", "Sides slip by moisture", 0.0, 0.0, lasting + swing, _SLIP_SOURCE, 0.0)
 
 
-def _sums(kind: str, opening: float, closing: float, along: float, across: float, shear: float, rows: Sequence[Cause]) -> list[Step]:
+def _sums(kind: str, opening: float, closing: float, along: Sequence[float], across: Sequence[float], shear: float, rows: Sequence[Cause]) -> list[Step]:
     """The three sums, with every part that went in."""
 
     def total(key: str, title: str, symbol: str, attribute: str, result: float) -> Step:
@@ -328,8 +330,10 @@ def _sums(kind: str, opening: float, closing: float, along: float, across: float
         steps.append(total("opening", "Total opening", "o", "opening_mm", opening))
         steps.append(total("closing", "Total closing", "c", "closing_mm", closing))
     if along or across or kind in ("lap", "mixed"):
+        inputs = {f"{name}{index}": Value(part, "length") for name, parts in (("p", along), ("q", across)) for index, part in enumerate(parts or [0.0])}
+        squares = [" + ".join(f"{{{key}}}" for key in inputs if key.startswith(name)) for name in ("p", "q")]
         steps.append(Step(
-            "shear", "Shear", "s", "√(s_along² + s_across²)", "√(({p})² + ({q})²)", {"p": Value(along, "length"), "q": Value(across, "length")},
+            "shear", "Shear", "s", "√(s_along² + s_across²)", f"√(({squares[0]})² + ({squares[1]})²)", inputs,
             Value(shear, "length"), "Definition: two directions of slip at right angles", DEFINITION,
         ))  # fmt: skip
     return steps

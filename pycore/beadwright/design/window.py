@@ -117,14 +117,37 @@ def window_steps(width_mm: float, movement: Movement, capability: Capability, cl
     per_k = Value(rate, "rate")
     cold = sum(item.rate_mm_per_k * item.cold_c for item in movement.elements) / rate
     hot = sum(item.rate_mm_per_k * item.hot_c for item in movement.elements) / rate
+    lap = movement.kind == "lap"
+    opened, closed, other = ("s_max", "s_max", "s_other") if lap else ("o_max", "c_max", "other")
     mean = "T_cold and T_hot are the sides' means, weighted by α L." if len({(item.hot_c, item.cold_c) for item in movement.elements}) > 1 else ""
     return [
-        Step("window-to", "Sealing window, upper end", "T_to", "T_cold + (o_max − o_other) / Σ(α L)", "{T} + ({m} − {f}) / {r}",
+        *_allowed_steps(width_mm, movement, capability, closed_gap_mm, open_slack, close_slack),
+        Step("window-to", "Sealing window, upper end", "T_to", f"T_cold + ({opened} − {other}) / Σ(α L)", "{T} + ({m} − {f}) / {r}",
              {"T": Value(cold, "temperature"), "m": Value(open_slack, "length"), "f": Value(movement.fixed_opening_mm, "length"), "r": per_k},
              Value(cold + (open_slack - movement.fixed_opening_mm) / rate, "temperature"), "Definition: the opening then just uses up the class", DEFINITION,
              remark=("Beyond the hottest that the elements get, so opening sets no limit. " if window.high_limited_by == "element" else "") + mean),
-        Step("window-from", "Sealing window, lower end", "T_from", "T_hot − (c_max − c_other) / Σ(α L)", "{T} − ({m} − {f}) / {r}",
+        Step("window-from", "Sealing window, lower end", "T_from", f"T_hot − ({closed} − {other}) / Σ(α L)", "{T} − ({m} − {f}) / {r}",
              {"T": Value(hot, "temperature"), "m": Value(close_slack, "length"), "f": Value(movement.fixed_closing_mm, "length"), "r": per_k},
              Value(hot - (close_slack - movement.fixed_closing_mm) / rate, "temperature"), "Definition: the closing then just uses up the class", DEFINITION,
              remark=("Beyond the coldest that the elements get, so closing sets no limit. " if window.low_limited_by == "element" else "") + mean),
+    ]  # fmt: skip
+
+
+def _allowed_steps(width_mm: float, movement: Movement, capability: Capability, gap_mm: float, open_slack_mm: float, close_slack_mm: float) -> list[Step]:
+    """Working of what the class allows at this width, before any of it is used."""
+    width, stretch = Value(width_mm, "length"), Value(capability.extension_fraction, "number")
+    source = "Geometry of the stretched bond line, solved for the movement"
+    if movement.kind == "lap":
+        return [Step("slip-allowed", "Slip that the class allows at this width", "s_max", "√((1 + S_e)² w² − (w + o)² − s_across²) − s_entered", "√((1 + {S})² × ({w})² − ({w} + {o})² − ({x})²) − {e}",
+                     {"S": stretch, "w": width, "o": Value(movement.entered_opening_mm, "length"), "x": Value(movement.across_mm, "length"), "e": Value(movement.entered_shear_mm, "length")},
+                     Value(open_slack_mm, "length"), source, DEFINITION)]  # fmt: skip
+    pressed = Value(capability.compression_fraction, "number")
+    if gap_mm:
+        formula, template, inputs = "lesser of S_c · w and w − g", "min({S} × {w}, {w} − {g})", {"S": pressed, "w": width, "g": Value(gap_mm, "length")}
+    else:
+        formula, template, inputs = "S_c · w", "{S} × {w}", {"S": pressed, "w": width}
+    return [
+        Step("opening-allowed", "Opening that the class allows at this width", "o_max", "√((1 + S_e)² w² − s²) − w", "√((1 + {S})² × ({w})² − ({s})²) − {w}",
+             {"S": stretch, "w": width, "s": Value(movement.shear_mm, "length")}, Value(open_slack_mm, "length"), source, DEFINITION),
+        Step("closing-allowed", "Closing that the class allows at this width", "c_max", formula, template, inputs, Value(close_slack_mm, "length"), "Definition of the class and of the gap set for the site", DEFINITION),
     ]  # fmt: skip

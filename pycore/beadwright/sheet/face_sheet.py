@@ -20,11 +20,11 @@ _CHECKS: dict[str, tuple[str, str, str, str]] = {
     "range": ("Sealant's range", "", "", "Needs the surface temperature."),
     "apply-from": ("Warm enough for the sealant", "Warm enough.", "Colder than the sealant may be applied.", ""),
     "apply-to": ("Cool enough for the sealant", "Cool enough.", "Hotter than the sealant may be applied: wait for shade.", ""),
-    "dew": ("Surface over dew point", "Dry enough: no dew will form.", "Too close to the dew point: moisture forms on the face.", "Needs air temperature, humidity and surface."),
-    "class": ("Share of the class used", "Stays within class all year.", "Sealed now, it would pass its class within the year.", "Needs the width and the surface temperature."),
+    "dew": ("Surface over dew point", "Dry enough: no dew will form.", "Too close to the dew point: moisture forms on the face.", "Needs air temperature, humidity, surface and the margin set for the site."),
+    "class": ("Share of the width needed", "Stays within class all year.", "Sealed now, it would pass its class within the year.", "Needs the width and the surface temperature."),
     "width-least": ("Not too narrow", "Wide enough to seal.", "Narrower than is practical to seal.", ""),
     "width-most": ("Not too wide", "Narrow enough to seal.", "Wider than is practical to seal.", ""),
-    "green": ("Movement while green", "Little enough movement while it cures.", "It would move too much while it cures: seal later in the day, in shade, or on a cloudy day.", ""),
+    "green": ("Movement while green", "Little enough movement while it cures.", "It would move too much while it cures: seal later in the day, in shade, or on a cloudy day.", "Needs the limit set for the site."),
 }  # fmt: skip
 
 
@@ -75,7 +75,7 @@ def _brief(value: Value | None, system: str) -> str:
     if value.kind == "temperature_difference":
         return writing.difference(value.number, system)
     if value.kind == "percent":
-        return writing.percent(value.number) if value.number < 100 else "over 9999 %"
+        return writing.percent_up(value.number) if value.number < 100 else "over 9999 %"
     return writing.length(value.number, system)
 
 
@@ -85,8 +85,10 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
     def add(key: str, question: str, text: str, detail: str = "", tone: str = "plain") -> None:
         bands.append({"key": key, "question": question, "answer": text, "detail": detail, "tone": tone})
 
-    if answer.cold_width_mm is not None and answer.hot_width_mm is not None and answer.cold_strain_fraction is not None and answer.hot_strain_fraction is not None:
-        add("extremes", "How far will it go?", f"{writing.length(round(answer.hot_width_mm, 1), system)} to {writing.length(round(answer.cold_width_mm, 1), system)}",
+    if answer.slip_mm is not None and answer.cold_strain_fraction is not None:
+        add("extremes", "How far will it go?", f"Slips {writing.up(answer.slip_mm, system)}", f"From the temperature now; the bead stretches by {writing.percent(answer.cold_strain_fraction)}.")
+    elif answer.cold_width_mm is not None and answer.hot_width_mm is not None and answer.cold_strain_fraction is not None and answer.hot_strain_fraction is not None:
+        add("extremes", "How far will it go?", f"{writing.length(answer.hot_width_mm, system)} to {writing.length(answer.cold_width_mm, system)}",
             f"Hottest to coldest; strain {writing.percent(answer.hot_strain_fraction, signed=True)} to {writing.percent(answer.cold_strain_fraction, signed=True)}.")  # fmt: skip
     if answer.window is not None:
         if answer.window.is_empty or answer.window.from_c is None or answer.window.to_c is None:
@@ -94,7 +96,7 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
         else:
             add("window", "At which temperature?", f"{writing.temperature_up(answer.window.from_c, system)} to {writing.temperature_down(answer.window.to_c, system)}", "Of the elements, for the narrowest width read.")
     if answer.reference_width_mm is not None and answer.reference_c is not None:
-        add("reference", f"Width at {writing.temperature(answer.reference_c, system)}?", writing.length(round(answer.reference_width_mm, 1), system), "To compare with the drawing and with other days.")
+        add("reference", f"Width at {writing.temperature(answer.reference_c, system)}?", writing.length(answer.reference_width_mm, system), "To compare with the drawing and with other days.")
     if answer.rod is not None:
         add("rod", "Which rod?", f"{answer.rod.size_label} {answer.rod.label.lower()}" if answer.rod.diameter_mm else answer.rod.size_label, _rod_detail(answer.rod, system), "plain" if answer.rod.fits else "warn")
     if answer.depth is not None:
@@ -102,7 +104,7 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
     if answer.dew_point_c is not None:
         add("dew", "Dew point?", writing.temperature(answer.dew_point_c, system), "Of the air now.")
     if answer.green_fraction is not None:
-        add("green", "Movement while green?", writing.percent(answer.green_fraction), "Of the width, over the swing entered. A rough guide: how far a green bead may move depends on the sealant.")
+        add("green", "Movement while green?", writing.percent(answer.green_fraction), "Of the narrowest width, over the swing entered. A rough guide: how far a green bead may move depends on the sealant.")
     return bands
 
 

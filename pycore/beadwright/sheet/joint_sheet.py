@@ -75,6 +75,8 @@ def verdict_text(judged: Judgement, system: str) -> str:
         return judged.reason
     need, have = writing.up(widths.required_mm, system), writing.down(widths.judged_mm, system)
     governs = widths.governed_by.label
+    # With shear or a least gap the strain does not go by the width, so the share is one of width only.
+    linear = widths.governed_by.key in ("opening", "closing") or (widths.governed_by.key == "swing" and not (judged.movement and judged.movement.shear_mm))
     if judged.reason == "practical-most":
         limit = writing.length(widths.practical_most_mm, system)
         shown = writing.length(widths.present_mm if widths.present_mm is not None else widths.design_mm, system)
@@ -84,12 +86,14 @@ def verdict_text(judged: Judgement, system: str) -> str:
     if widths.present_mm is None:
         return f"No width is entered. {writing.length(widths.design_mm, system)} would keep the joint within {judged.sealant.class_label}; {governs} governs."
     tail = "" if widths.judged_mm == widths.present_mm else " once the tolerance is off"
-    used = writing.percent(widths.use_fraction) if widths.use_fraction < 100 else "far more than all"
+    used = writing.percent_up(widths.use_fraction) if widths.use_fraction < 100 else "far more than all"
     if judged.verdict == BEYOND:
         if widths.judged_mm <= 0:
             return "The tolerance eats the whole width: nothing is left that can be relied on."
-        return f"Needs {need}, has {have}{tail}: {used} of {judged.sealant.class_label} would be used; {governs} governs.{_way_out(judged, system)}"
-    return f"Needs {need}, has {have}{tail}: {used} of {judged.sealant.class_label} is used; {governs} governs."
+        said = f"{used} of {judged.sealant.class_label} would be used" if linear else f"{used} of it would be needed for {judged.sealant.class_label}"
+        return f"Needs {need}, has {have}{tail}: {said}; {governs} governs.{_way_out(judged, system)}"
+    said = f"{used} of {judged.sealant.class_label} is used" if linear else f"{used} of it is needed for {judged.sealant.class_label}"
+    return f"Needs {need}, has {have}{tail}: {said}; {governs} governs."
 
 
 def _way_out(judged: Judgement, system: str) -> str:
@@ -195,7 +199,7 @@ def _bands(judged: Judgement, system: str) -> list[Band]:
         bands.append(_rod_band(judged, system))
     bands += [_window_band(judged, system), _class_band(judged), _spacing_band(judged, system)]
     if not lap:
-        bands.append(_strain_band(judged))
+        bands.append(_strain_band(judged, system))
     bands.append(_section_band(judged, system, lap=lap))
     return bands
 
@@ -203,8 +207,7 @@ def _bands(judged: Judgement, system: str) -> list[Band]:
 def _width_band(judged: Judgement, system: str, *, lap: bool) -> Band:
     widths = judged.widths
     assert widths is not None
-    tolerance = widths.rss_mm if widths.design_mm == widths.rss_mm and widths.rss_mm != widths.worst_mm else widths.worst_mm
-    by = "root of squares" if tolerance == widths.rss_mm and widths.rss_mm != widths.worst_mm else "worst case"
+    by = "root of squares" if widths.by_rss else "worst case"
     detail = f"Movement asks for {writing.up(widths.required_mm, system)} ({widths.governed_by.label} governs)."
     if widths.tolerance_worst_mm:
         detail += f" With tolerance: {writing.length(widths.worst_mm, system)} worst case, {writing.length(widths.rss_mm, system)} by root of squares; {by} is used."
@@ -219,9 +222,11 @@ def _movement_band(judged: Judgement, system: str) -> Band:
     assert movement is not None
     parts = []
     if movement.kind != "lap" or movement.opening_mm or movement.closing_mm:
-        parts += [f"opens {writing.length(_tenth(movement.opening_mm), system)}", f"closes {writing.length(_tenth(movement.closing_mm), system)}"]
+        parts += [f"opens {writing.up(movement.opening_mm, system)}", f"closes {writing.up(movement.closing_mm, system)}"]
+    if movement.total_swing and movement.kind != "lap":
+        parts.append(f"{writing.up(movement.swing_mm, system)} in all")
     if movement.shear_mm:
-        parts.append(f"slips {writing.length(_tenth(movement.shear_mm), system)}")
+        parts.append(f"slips {writing.up(movement.shear_mm, system)}")
     sealed = "at any temperature"
     if movement.seal_from_c is not None or movement.seal_to_c is not None:
         low = "any cold" if movement.seal_from_c is None else writing.temperature(movement.seal_from_c, system)
@@ -231,17 +236,12 @@ def _movement_band(judged: Judgement, system: str) -> Band:
     return _band("movement", "How does it move?", ", ".join(parts) or "not at all", temperatures)
 
 
-def _tenth(value_mm: float) -> float:
-    """A movement for an answer: to a tenth of a millimetre, upwards."""
-    return writing.ceil_to(value_mm, 10)
-
-
 def _depth_band(judged: Judgement, system: str, *, lap: bool) -> Band:
     bead, rule = judged.bead, judged.depth_rule
     assert bead is not None
     if lap:
         return _band("depth", "How much cover?", writing.length(judged.neck_mm, system), "Bonded on both faces; common practice, the depth rule sets do not speak of laps.")
-    detail = f"At mid-width; {writing.length(_tenth(bead.bond_mm), system)} bonded at each face."
+    detail = f"At mid-width; {writing.length(bead.bond_mm, system)} bonded at each face."
     if rule is not None and judged.neck_source == "rule":
         detail += f" By {rule.rule.label}: {writing.length(rule.least_mm, system)} to {writing.length(rule.most_mm, system)}."
         against = [item for item in judged.depth_others if item.rule.id != rule.rule.id and item.covers_width and not depths.agrees(rule.target_mm, item)]
@@ -304,17 +304,17 @@ def _spacing_band(judged: Judgement, system: str) -> Band:
         return _band("spacing", question, "Not governed by length", "Nothing that depends on the length of the elements decides here, or the other movements use the class up.")
     now = sum(item.effective_mm for item in judged.elements)
     return _band(
-        "spacing", question, f"{writing.span(spacing, system)} feeding the joint",
-        f"Both sides together at {writing.length(widths.judged_mm, system)}; now {writing.span(now, system)}. With elements held at mid-length this is the joint spacing.",
+        "spacing", question, f"{writing.span_down(spacing, system)} feeding the joint",
+        f"Both sides together at {writing.down(widths.judged_mm, system)}; now {writing.span(now, system)}. With elements held at mid-length this is the joint spacing.",
     )  # fmt: skip
 
 
-def _strain_band(judged: Judgement) -> Band:
-    cold, hot = judged.opened, judged.closed
-    assert cold is not None and hot is not None
+def _strain_band(judged: Judgement, system: str) -> Band:
+    cold, hot, bead = judged.opened, judged.closed, judged.bead
+    assert cold is not None and hot is not None and bead is not None
     return _band(
         "strain", "How hard is the bead worked?", f"{writing.percent(cold.average_fraction, signed=True)} cold, {writing.percent(hot.average_fraction, signed=True)} hot",
-        f"Average across the bead. At its free face: {writing.percent(cold.face_fraction, signed=True)} at the coldest, {writing.percent(hot.face_fraction, signed=True)} at the hottest.",
+        f"Average across a bead {writing.length(bead.width_mm, system)} wide, sealed at the worst temperature for each. At its free face: {writing.percent(cold.face_fraction, signed=True)} at the coldest, {writing.percent(hot.face_fraction, signed=True)} at the hottest.",
     )  # fmt: skip
 
 
@@ -352,11 +352,14 @@ def _causes_table(judged: Judgement, system: str) -> dict[str, Any]:
     assert movement is not None
 
     def cells(label: str, opening: float, closing: float, shear: float) -> list[str]:
-        return [label, *(writing.value_text(writing.Value(round(part, 2), "length"), system) if part else "–" for part in (opening, closing, shear))]
+        return [label, *(writing.fine(part, system) if part else "–" for part in (opening, closing, shear))]
 
     rows: list[dict[str, Any]] = [{"cells": cells(row.label, row.opening_mm, row.closing_mm, row.shear_mm), "mark": None} for row in movement.rows]
     rows.append({"cells": cells("Total", movement.opening_mm, movement.closing_mm, movement.shear_mm), "mark": "total"})
-    return _table("causes", "Movement by cause", ("Cause", "Opens", "Closes", "Slips"), rows, "Slips at right angles combine as the root of the sum of squares.")
+    note = "Slips at right angles combine as the root of the sum of squares."
+    if movement.total_swing and movement.kind != "lap":
+        note += f" One bead is sealed once and so swings {writing.up(movement.swing_mm, system)} in all, whatever the temperature at sealing."
+    return _table("causes", "Movement by cause", ("Cause", "Opens", "Closes", "Slips"), rows, note)
 
 
 def _class_table(judged: Judgement, system: str) -> dict[str, Any]:
@@ -377,7 +380,7 @@ def _range_table(judged: Judgement, system: str) -> dict[str, Any]:
     rows = []
     for point in _curve(judged, sealed, 5):
         temperatures = " / ".join(writing.temperature(round(at, 1), system) for at in dict.fromkeys(point["element_c"]))
-        rows.append({"cells": [temperatures, writing.length(round(point["width_mm"], 1), system), writing.percent(point["average_fraction"], signed=True), writing.percent(point["face_fraction"], signed=True)], "mark": None})
+        rows.append({"cells": [temperatures, writing.length(point["width_mm"], system), writing.percent(point["average_fraction"], signed=True), writing.percent(point["face_fraction"], signed=True)], "mark": None})
     return _table("range", "From the coldest to the hottest", ("Elements, A / B", "Width", "Average strain", "Strain at the face"), rows,
                   f"Temperature movement only, sealed at {sealed_text}.")  # fmt: skip
 
@@ -425,8 +428,8 @@ def _section(judged: Judgement, system: str, change_mm: float = 0.0, shear_mm: f
     now = bead.width_mm + change_mm
     return Section(
         movement.kind, bead.width_mm, bead.neck_mm, bead.tool_sag_mm, bead.rod_sag_mm, rod_mm, bool(rod and rod.type_id == "tape"), change_mm, shear_mm,
-        bead.width_mm + movement.opening_mm, writing.length(round(now, 1), system) if system == "metric" or change_mm else writing.length(now, system),
-        writing.length(round(state.neck_mm, 1) if state else bead.neck_mm, system), writing.length(_tenth(bead.bond_mm), system), rod.size_label if rod else "",
+        bead.width_mm + movement.opening_mm, writing.length(now, system),
+        writing.length(state.neck_mm if state else bead.neck_mm, system), writing.length(bead.bond_mm, system), rod.size_label if rod else "",
         f"A  {judged.elements[0].substrate.label}", f"B  {judged.elements[1].substrate.label}", f"Section of {judged.joint.values['name'] or judged.joint.id}, {writing.length(now, system)} wide",
     )  # fmt: skip
 
@@ -447,7 +450,7 @@ def frames(judged: Judgement, system: str) -> dict[str, Any]:
         return {"frames": [], "start": 0, "caption": judged.reason}
     sealed, sealed_text = _sealed_at(judged, system)
     found = [_frame(judged, system, index / (FRAME_COUNT - 1), sealed) for index in range(FRAME_COUNT)]
-    start = round(sealed * (FRAME_COUNT - 1))
+    start = min(max(round(sealed * (FRAME_COUNT - 1)), 0), FRAME_COUNT - 1)
     return {"frames": found, "start": start, "caption": f"Temperature movement only, for a bead sealed at {sealed_text}. Lasting moisture movement and loads come on top."}
 
 
@@ -456,14 +459,27 @@ def _sealed_at(judged: Judgement, system: str) -> tuple[float, str]:
     movement, window = judged.movement, judged.window
     assert movement is not None and window is not None
     low, high = movement.cold_c, movement.hot_c
-    surface = judged.joint.face["surface"]
+    surface, other = judged.joint.face["surface"], judged.joint.face["surface_b"]
     if surface is not None:
-        at = min(max(surface, low), high)
-        return (at - low) / (high - low), f"{writing.temperature(at, system)}, the surface measured at the face"
+        measured = (surface, surface if other is None else other)
+        shown = " and ".join(writing.temperature(at, system) for at in dict.fromkeys(measured))
+        return _share(judged, measured), f"{shown}, the surface measured at the face"
     bottom = max(item for item in (window.from_c, movement.seal_from_c, low) if item is not None)
     top = min(item for item in (window.to_c, movement.seal_to_c, high) if item is not None)
     at = min(max(0.5 * (bottom + top), low), high)
-    return (at - low) / (high - low), f"{writing.temperature(at, system)}, the middle of its sealing range"
+    return _share(judged, (at, at)), f"{writing.temperature(at, system)}, the middle of its sealing range"
+
+
+def _share(judged: Judgement, sealed_c: tuple[float, float]) -> float:
+    """How far the joint has come from its widest to its narrowest at the given temperatures of the sides.
+
+    Sides whose ranges differ do not stand at the same share; the gap counts what each of them has moved.
+    """
+    swing = sum(item.rate_mm_per_k * (item.hot_c - item.cold_c) for item in judged.elements)
+    if swing == 0.0:
+        item = judged.elements[0]
+        return (sealed_c[0] - item.cold_c) / (item.hot_c - item.cold_c)
+    return sum(item.rate_mm_per_k * (at - item.cold_c) for item, at in zip(judged.elements, sealed_c, strict=True)) / swing
 
 
 def _frame(judged: Judgement, system: str, fraction: float, sealed: float) -> dict[str, Any]:
@@ -476,7 +492,7 @@ def _frame(judged: Judgement, system: str, fraction: float, sealed: float) -> di
     lap = movement.kind == "lap"
     state = strained(bead, 0.0 if lap else moved, abs(moved) if lap else 0.0)
     section = _section(judged, system, 0.0 if lap else moved, moved if lap else 0.0)
-    lines = [{"label": "Slip" if lap else "Width", "value": writing.length(round(abs(moved) if lap else bead.width_mm + moved, 1), system)}]
+    lines = [{"label": "Slip" if lap else "Width", "value": writing.length(abs(moved) if lap else bead.width_mm + moved, system)}]
     lines.append({"label": "Average strain", "value": writing.percent(state.average_fraction, signed=True)})
     if not lap:
         lines.append({"label": "Strain at the face", "value": writing.percent(state.face_fraction, signed=True)})

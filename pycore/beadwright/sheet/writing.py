@@ -23,7 +23,7 @@ def value_text(value: Value | None, system: str) -> str:
     if kind == "area":
         return f"{plain(number, 1)} mm²" if system == METRIC else f"{plain(number / 645.16, 4)} in²"
     if kind == "rate":
-        return f"{plain(number, 5)} mm/K" if system == METRIC else f"{plain(number / 25.4 / 1.8, 6)} in/°F"
+        return f"{plain(number, 5)} mm/K" if system == METRIC else f"{plain(number / 25.4 / 1.8, 7)} in/°F"
     if kind == "length":
         return f"{plain(number, 3)} mm" if system == METRIC else f"{plain(number / 25.4, 4)} in"
     if kind == "percent":
@@ -70,8 +70,10 @@ def length(value_mm: float | None, system: str) -> str:
 
 
 def up(value_mm: float, system: str) -> str:
-    """A length that must not look smaller than it is: to a tenth of a millimetre or 1/1000 in, upwards."""
-    return f"{plain(ceil_to(value_mm, 10), 1)} mm" if system == METRIC else f"{plain(ceil_to(value_mm / 25.4, 1000), 3)} in"
+    """A length that must not look smaller than it is: a tenth of a millimetre or 1/1000 in, upwards; an inch fraction stays one."""
+    if system == METRIC:
+        return f"{plain(ceil_to(value_mm, 10), 1)} mm"
+    return quantity.show_inches(value_mm, 32, exact_only=True) or f"{plain(ceil_to(value_mm / 25.4, 1000), 3)} in"
 
 
 def down(value_mm: float, system: str) -> str:
@@ -86,9 +88,20 @@ def ceil_to(value: float, per_unit: int) -> float:
     return math.ceil(value * per_unit - 1e-6) / per_unit
 
 
+def fine(value_mm: float, system: str) -> str:
+    """A movement in a table: to a hundredth of a millimetre or 1/10000 in."""
+    return f"{plain(value_mm, 2)} mm" if system == METRIC else f"{plain(value_mm / 25.4, 4)} in"
+
+
 def span(value_mm: float, system: str) -> str:
     """An element-sized length as an answer."""
     return quantity.show_span(value_mm, system)
+
+
+def span_down(value_mm: float, system: str) -> str:
+    """The greatest length of an element, to a millimetre or 1/16 in, downwards."""
+    step_mm = 1.0 if system == METRIC else 25.4 / 16
+    return quantity.show_span(math.floor(value_mm / step_mm + 1e-6) * step_mm, system)
 
 
 def temperature(value_c: float, system: str) -> str:
@@ -121,6 +134,11 @@ def percent(fraction: float, *, signed: bool = False) -> str:
     """A fraction as a percentage with one decimal."""
     text = f"{plain(fraction * 100, 1)} %"
     return f"+{text}" if signed and fraction > 0 else text
+
+
+def percent_up(fraction: float) -> str:
+    """A share that must not look smaller than it is: to a tenth of a per cent, upwards."""
+    return f"{plain(ceil_to(fraction * 100, 10), 1)} %"
 
 
 def area(value_mm2: float, system: str) -> str:
