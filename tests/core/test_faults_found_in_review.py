@@ -106,3 +106,10 @@ def test_working_shows_how_the_window_and_the_depth_come_about():
     steps = {step["key"]: step for step in only_joint(make_job({"width": "20 mm", "width_is": "built"}))["steps"]}
     assert {"opening-allowed", "closing-allowed"} <= set(steps)
     assert steps["depth"]["numbers"].startswith("0.5 × 20 mm, not under 6 mm, not over 13 mm")
+
+
+def test_failing_the_class_at_the_face_is_not_called_passing_it():
+    """`It would pass its class` reads as the opposite of what is meant."""
+    face = only_joint(make_job({"face": {"width": "7 mm", "surface": "45 degC"}}))["face"]
+    assert next(item for item in face["checks"] if item["key"] == "class")["pass"] is False
+    assert "beyond its class" in face["verdict_text"] and "pass" not in face["verdict_text"]

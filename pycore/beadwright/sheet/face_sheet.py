@@ -21,7 +21,7 @@ _CHECKS: dict[str, tuple[str, str, str, str]] = {
     "apply-from": ("Warm enough for the sealant", "Warm enough.", "Colder than the sealant may be applied.", ""),
     "apply-to": ("Cool enough for the sealant", "Cool enough.", "Hotter than the sealant may be applied: wait for shade.", ""),
     "dew": ("Surface over dew point", "Dry enough: no dew will form.", "Too close to the dew point: moisture forms on the face.", "Needs air temperature, humidity, surface and the margin set for the site."),
-    "class": ("Share of the width needed", "Stays within class all year.", "Sealed now, it would pass its class within the year.", "Needs the width and the surface temperature."),
+    "class": ("Share of the width needed", "Stays within class all year.", "Sealed now, it would go beyond its class within the year.", "Needs the width and the surface temperature."),
     "width-least": ("Not too narrow", "Wide enough to seal.", "Narrower than is practical to seal.", ""),
     "width-most": ("Not too wide", "Narrow enough to seal.", "Wider than is practical to seal.", ""),
     "green": ("Movement while green", "Little enough movement while it cures.", "It would move too much while it cures: seal later in the day, in shade, or on a cloudy day.", "Needs the limit set for the site."),
