@@ -8,14 +8,20 @@ here, with hashlib, not with the code that wrote them.
 
     python tests/browser/store/kill_harness.py --rounds 200
 
-The page is found through data-testid hooks that the app has as well (`field-title`, `save-state` with `data-kind`), so
+The page is found through data-testid hooks that the app has as well (`field-…`, `save-state` with `data-kind`), so
 that the app as built can be killed in the same way:
 
     python tests/browser/store/kill_harness.py --rounds 20 --app web/dist
 
 That the harness can go red is shown with faults put into the page (`--fault`), 40 rounds each:
 
-@@SEEN@@
+    early-ack    a save is called complete as soon as it has begun: 10 of 573 acknowledged edits lost, 0 torn
+    two-writes   revision and pointer in two transactions: 59 of 498 acknowledged edits lost, 94 torn records
+    relaxed      the browser's default durability: 0 of 569 lost, 0 torn
+
+The last line is no fault of the harness: killing a process leaves what it has handed to the operating system, so a
+kill cannot tell relaxed from strict durability. Only a power cut could. That commits ask for strict durability is
+therefore held by a test of its own (promise 2 in test_promises.py).
 """
 
 from __future__ import annotations
@@ -40,6 +46,8 @@ from typing import Any
 # Seconds of editing before the kill, at random between these.
 LEAST_S, MOST_S = 0.05, 0.7
 LONGEST_ROUND_S = 60
+# Edits that the page may have begun, and even saved, before the kill cut off its word of them.
+MOST_UNHEARD = 3
 
 FAULTS = {
     # The browser's default: the data has been handed to the system, not to the disk.
@@ -224,6 +232,12 @@ def wait_until_gone(group: int) -> None:
     raise RuntimeError("the killed browser is still there")
 
 
+def value_at(payload: Any, path: tuple[str, ...]) -> Any:
+    for key in path:
+        payload = payload.get(key, {}) if isinstance(payload, dict) else {}
+    return payload
+
+
 def edit_number(title: object) -> int:
     match = re.search(r"\d+", str(title))
     return int(match.group()) if match else 0
@@ -241,6 +255,7 @@ def run(
     database: str = "beadwright",
     field_selector: str = '[data-testid="field-title"] input',
     state_selector: str = '[data-testid="save-state"]',
+    path: tuple[str, ...] = ("title",),
     is_uniform: bool = True,
     fault: str | None = None,
     say: Callable[[str], None] = lambda _text: None,
@@ -264,7 +279,7 @@ def run(
                 if torn := find_torn(dump, job, is_uniform=is_uniform):
                     report.torn += len(torn)
                     report.faults.append(f"round {round_}: {torn}")
-                mine = {r["rev"]: r["payload"]["title"] for r in dump["revisions"] if r["id"] == job}
+                mine = {r["rev"]: value_at(r["payload"], path) for r in dump["revisions"] if r["id"] == job}
                 # Without its head a job opens at the newest revision there is.
                 heads = [mine.get(p["rev"], mine[max(mine)] if mine else 0) for p in dump["jobs"] if p["id"] == job]
                 found = edit_number(heads[0]) if heads else 0
@@ -272,8 +287,9 @@ def run(
                     report.lost += acknowledged - found
                     report.faults.append(f"round {round_}: edit {acknowledged} was acknowledged, {found} was found")
                     acknowledged = found
-                if found > issued:
+                if found > issued + MOST_UNHEARD:
                     report.faults.append(f"round {round_}: edit {found} was never made")
+                issued = max(issued, found)
                 report.unacknowledged_found += max(0, found - acknowledged)
                 report.cut_short += found < issued and round_ > 0
                 report.drafts_found += len(dump["drafts"])
@@ -287,7 +303,7 @@ def run(
                 job = make_job(page)
             page.goto(url if make_job is None else f"{url}#/job/{job}")
             page.wait_for_selector(field_selector, state="attached")
-            page.wait_for_function("(s) => document.querySelector(s)?.dataset.kind !== undefined && document.querySelector(s).dataset.kind !== ''", arg=state_selector)
+            page.wait_for_selector(f'{state_selector}[data-kind]:not([data-kind=""])', state="attached")
             if dump is not None and fault is None:
                 shown = edit_number(page.input_value(field_selector))
                 if shown != found:
@@ -319,9 +335,23 @@ def run(
 def new_job(page: Any) -> str:
     """Make a job in the app as a person would; its id is in the address then."""
     page.click('[data-testid="new-metric"]')
-    page.wait_for_function("location.hash.startsWith('#/job/')")
+    page.wait_for_url("**/index.html#/job/*")
     page.wait_for_selector('[data-testid="save-state"][data-kind="saved"]')
     return page.evaluate("decodeURIComponent(location.hash.split('/')[2])")
+
+
+def run_app(rounds: int, base: str, **common: Any) -> Report:
+    """Kill the app as built, edited through its field for the place of the building."""
+    return run(
+        rounds,
+        url=f"{base}/index.html",
+        blank=f"{base}/forms.json",
+        make_job=new_job,
+        field_selector='[data-testid="field-place"] input',
+        path=("site", "place"),
+        is_uniform=False,
+        **common,
+    )
 
 
 def main() -> int:
@@ -346,7 +376,7 @@ def main() -> int:
     }
     if options.app is not None:
         with conftest.serve(options.app) as base:
-            report = run(options.rounds, url=f"{base}/index.html", blank=f"{base}/forms.json", make_job=new_job, is_uniform=False, **common)
+            report = run_app(options.rounds, base, **common)
     else:
         with tempfile.TemporaryDirectory() as folder:
             conftest.build_pages(Path(folder))

@@ -7,7 +7,7 @@ import copy
 import pytest
 
 from . import kill_harness
-from .conftest import CHROMIUM_ARGUMENTS, find_chromium
+from .conftest import CHROMIUM_ARGUMENTS, WEB, find_chromium, serve
 
 pytestmark = pytest.mark.browser
 
@@ -51,6 +51,18 @@ def test_the_harness_goes_red_when_a_save_is_said_too_early(store_url, in_own_th
     assert report.torn > 0
     assert report.lost > 0
     assert not report.is_clean
+
+
+def test_the_app_itself_loses_nothing_when_it_is_killed(in_own_thread):
+    """The same, through the fields of the app as built; `tests/run.py` builds it first."""
+    dist = WEB / "dist"
+    if not (dist / "index.html").exists():
+        pytest.skip("web/dist is not built")
+    with serve(dist) as base:
+        report = in_own_thread(kill_harness.run_app, 6, base, executable=find_chromium(), arguments=CHROMIUM_ARGUMENTS, seed=SEED)
+    assert report.is_clean, report.faults
+    assert report.acknowledged > 0
+    print(report.text())
 
 
 # ---- the check itself, on records made to be torn ----------------------------------------------------------------
