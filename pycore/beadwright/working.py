@@ -11,6 +11,7 @@ READ = "read"
 MEMORY = "memory"
 COMMON_PRACTICE = "common practice"
 DEFINITION = "definition"
+DERIVED = "derived"
 ENTERED = "entered"
 
 

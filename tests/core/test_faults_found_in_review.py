@@ -113,3 +113,11 @@ def test_failing_the_class_at_the_face_is_not_called_passing_it():
     face = only_joint(make_job({"face": {"width": "7 mm", "surface": "45 degC"}}))["face"]
     assert next(item for item in face["checks"] if item["key"] == "class")["pass"] is False
     assert "beyond its class" in face["verdict_text"] and "pass" not in face["verdict_text"]
+
+
+def test_a_side_that_keeps_one_temperature_is_not_refused():
+    """Indoors hottest and coldest may be one; such a joint was not judged."""
+    still = {"summer_surface": "21 °C", "winter_surface": "21 °C"}
+    joint = only_joint(make_job({"width": "10 mm", "side_a": still, "side_b": still}))
+    assert joint["movement"]["opening_mm"] == joint["movement"]["closing_mm"] == 0.0
+    assert joint["verdict"] == "within" and joint["window"]["from_c"] == joint["window"]["to_c"] == 21.0

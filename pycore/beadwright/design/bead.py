@@ -5,7 +5,7 @@ from __future__ import annotations
 from attrs import frozen
 
 from ..physics import section, strain
-from ..working import COMMON_PRACTICE, DEFINITION, READ, Step, Value
+from ..working import COMMON_PRACTICE, DEFINITION, DERIVED, Step, Value
 
 TOOL_HOLLOW_OF_WIDTH = 0.1
 
@@ -84,12 +84,12 @@ def strained(bead: Bead, change_mm: float, shear_mm: float = 0.0) -> StrainState
 
 def strain_steps(bead: Bead, opened: StrainState, closed: StrainState) -> list[Step]:
     """Working of the strains at both ends."""
-    source = "Parabola and constant volume (Tons, HRB Bulletin 229, 1959, pp 20–53; geometry re-derived)"
+    source = "Parabola and constant volume, after Tons, HRB Bulletin 229 (1959), which was cited but not read; geometry derived"
     steps = []
     for key, word, state in (("cold", "coldest", opened), ("hot", "hottest", closed)):
         steps.append(Step(
             f"face-{key}", f"Face strain at the {word}", "ε_f", "arc / w − 1; arc = ½√(c² + 16h²) + c²/(8h) · asinh(4h/c), c = w + Δ, h = ¾ d Δ / c", "with w = {w}, d = {d}, Δ = {x}",
             {"w": Value(bead.width_mm, "length"), "d": Value(bead.neck_mm, "length"), "x": Value(state.change_mm, "length")},
-            Value(state.face_fraction, "percent"), source, READ,
+            Value(state.face_fraction, "percent"), source, DERIVED,
         ))  # fmt: skip
     return steps

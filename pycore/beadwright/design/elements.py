@@ -66,7 +66,7 @@ def read_element(key: str, joint: JointInput, project: Project) -> Element | Non
     cold = _cold(values, mark, project, steps)
     if hot is None or cold is None:
         return None
-    if hot <= cold:
+    if hot < cold:
         return None
     expansion = values["expansion"]
     if expansion is None:

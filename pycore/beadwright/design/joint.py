@@ -135,7 +135,7 @@ def _no_temperatures(joint: JointInput, project: Project) -> str:
         if (hot is None and site["summer_air"] is None) or (cold is None and site["winter_air"] is None):
             return "The design temperatures of the site are missing or contradict each other."
         if hot is not None or cold is not None:
-            return f"{label}: its hottest is not warmer than its coldest; check the surface temperatures."
+            return f"{label}: its hottest is colder than its coldest; check the surface temperatures."
     return "The temperatures of a side cannot be worked out; check the site."
 
 

@@ -478,7 +478,8 @@ def _share(judged: Judgement, sealed_c: tuple[float, float]) -> float:
     swing = sum(item.rate_mm_per_k * (item.hot_c - item.cold_c) for item in judged.elements)
     if swing == 0.0:
         item = judged.elements[0]
-        return (sealed_c[0] - item.cold_c) / (item.hot_c - item.cold_c)
+        span = item.hot_c - item.cold_c
+        return (sealed_c[0] - item.cold_c) / span if span else 0.5
     return sum(item.rate_mm_per_k * (at - item.cold_c) for item, at in zip(judged.elements, sealed_c, strict=True)) / swing
 
 
