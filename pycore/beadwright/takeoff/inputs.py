@@ -40,12 +40,12 @@ class JointSection:
     reason: str
 
 
-def joint_section(judged: Judgement) -> JointSection:
+def joint_section(judged: Judgement, project: Project) -> JointSection:
     """The parts of a judged joint that a take-off needs; without a section, the reason why."""
     values, widths = judged.joint.values, judged.widths
     tolerance = 0.0
     if widths is not None:
-        tolerance = widths.tolerance_rss_mm if widths.design_mm == widths.rss_mm else widths.tolerance_worst_mm
+        tolerance = widths.tolerance_rss_mm if project.site["tolerance_method"] == "root-sum-square" else widths.tolerance_worst_mm
     return JointSection(
         judged.joint.id, values["name"] or judged.joint.id, values["kind"] or "butt", judged.sealant.id if judged.sealant else None,
         judged.bead.width_mm if judged.bead else None, values["width"] is None or values["width_is"] != "built", tolerance, judged.neck_mm,

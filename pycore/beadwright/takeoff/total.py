@@ -352,7 +352,8 @@ def _lines(mix: packing.Mix, offers: Mapping[str, _Offer], *, is_priced: bool) -
 
 def _one_more(line: PackLine, gross_ml_m: float, offer: _Offer) -> OneMore:
     pack = line.pack
-    is_box = pack.per_box > 1
+    # By the box where boxes are bought, else by the package.
+    is_box = pack.per_box > 1 and (line.boxes > 0 or pack.sold == "box")
     usable = float(line.usable_ml * (pack.per_box if is_box else 1))
     cost = (offer.box if offer.box is not None else offer.single * pack.per_box if offer.single is not None else None) if is_box else offer.single if offer.single is not None else offer.box
     return OneMore(f"One more box of {pack.per_box}: {pack.name}" if is_box else f"One more: {pack.name}", usable, usable / gross_ml_m, cost)
