@@ -299,3 +299,99 @@ def test_a_full_journey_breaks_no_policy(tablet, site):
     expect(page.locator(".joint-sheet").first).to_be_visible()
     assert tablet.requests.page_errors == []
     assert [text for text in tablet.requests.console_errors if "Content Security Policy" in text] == []
+
+
+# A page that is killed hears nothing beforehand: no event that it could save at.
+DEAF_TO_ITS_END = """const add = EventTarget.prototype.addEventListener;
+EventTarget.prototype.addEventListener = function (type, ...rest) {
+  if (!['visibilitychange', 'pagehide', 'freeze', 'beforeunload'].includes(type)) add.call(this, type, ...rest);
+};"""
+
+
+def test_what_was_typed_when_the_page_died_is_offered_back(make_context, site):
+    tablet = make_context()
+    tablet.add_init_script(DEAF_TO_ITS_END)
+    page = shell.demo(tablet, site.url)
+    page.locator(".joints .row-link").first.click()
+    target = shell.line(page, "/joints/0/place")
+    target.fill("Typed, never left")
+    expect(page.get_by_test_id("save-state")).to_contain_text("Draft kept")
+    address = page.url
+    page.close()
+    again = tablet.new_page()
+    again.goto(address)
+    banner = again.get_by_test_id("banner-draft")
+    expect(banner).to_be_visible()
+    expect(shell.line(again, "/joints/0/place")).not_to_have_value("Typed, never left")
+    again.get_by_test_id("restore-draft").click()
+    expect(shell.line(again, "/joints/0/place")).to_have_value("Typed, never left")
+    expect(banner).to_have_count(0)
+    shell.saved(again)
+
+
+def test_the_last_good_answer_stays_and_says_that_it_is_old(tablet, site):
+    page = shell.demo(tablet, site.url)
+    page.locator(".joints .row-link").first.click()
+    expect(shell.verdict(page)).to_have_attribute("data-verdict", "within")
+    page.workers[0].evaluate("self.close()")  # the worker dies without a word
+    shell.type_in(page, "/joints/0/width", "5")
+    expect(page.get_by_test_id("stale").first).to_be_visible()
+    expect(shell.verdict(page)).to_have_attribute("data-verdict", "within")
+    expect(shell.line(page, "/joints/0/width")).to_have_value("5 mm")
+    # Restarted and asked again, without a hand's turn.
+    expect(shell.verdict(page)).to_have_attribute("data-verdict", "beyond", timeout=60_000)
+    expect(page.get_by_test_id("stale")).to_have_count(0)
+
+
+def test_every_export_comes_out(tablet, site, tmp_path):
+    page = shell.demo(tablet, site.url)
+    page.get_by_role("link", name="Sheet", exact=True).click()
+    expect(page.locator(".joint-sheet").first).to_be_visible()
+    for kind, sign in (("job", b"beadwright-job"), ("sheet", b"<!doctype html>"), ("text", b"Harbour Hall"), ("schedule", b"Precast panel to panel")):
+        with page.expect_download() as waiting:
+            page.get_by_test_id(f"export-{kind}").click()
+        path = tmp_path / waiting.value.suggested_filename
+        waiting.value.save_as(path)
+        assert sign.lower() in path.read_bytes().lower(), kind
+
+
+def test_bin_backup_and_restore(tablet, site, tmp_path):
+    page = shell.demo(tablet, site.url)
+    page.get_by_role("link", name="Beadwright").click()
+    row = page.get_by_test_id("job-row-demo-harbour-hall")
+    with page.expect_download() as waiting:
+        page.get_by_test_id("backup").click()
+    backup = tmp_path / "all.json"
+    waiting.value.save_as(backup)
+    row.get_by_role("button", name="To the bin").click()
+    row.get_by_role("button", name="Yes, to the bin").click()
+    expect(row).to_have_count(0)
+    page.goto(site.url + "#/kept")
+    page.get_by_role("button", name="Put back").click()
+    expect(page.get_by_text("The bin is empty.")).to_be_visible()
+    page.goto(site.url + "#/")
+    row.get_by_role("button", name="To the bin").click()
+    row.get_by_role("button", name="Yes, to the bin").click()
+    expect(row).to_have_count(0)
+    page.goto(site.url + "#/kept")
+    page.get_by_role("button", name="Empty the bin").click()
+    page.get_by_role("button", name="Yes, delete 1 job for good").click()
+    expect(page.get_by_text("The bin is empty.")).to_be_visible()
+    page.goto(site.url + "#/")
+    expect(page.get_by_test_id("no-jobs")).to_be_visible()
+    page.get_by_test_id("restore").set_input_files(backup)
+    expect(row).to_be_visible()
+    row.get_by_role("link").click()
+    expect(page.locator(".joints .row-name").first).to_have_text("Precast panel to panel")
+
+
+def test_an_earlier_copy_is_brought_back_as_a_new_step(tablet, site):
+    page = shell.demo(tablet, site.url)
+    page.locator('[data-more="job block"]').click()
+    shell.type_in(page, "/title", "Second title")
+    shell.saved(page)
+    page.get_by_role("link", name="Earlier copies").click()
+    page.get_by_test_id("revision-1").get_by_role("button", name="Bring back").click()
+    expect(page.get_by_role("heading", level=1)).to_have_text("Harbour Hall (invented example)")
+    page.get_by_test_id("undo").click()
+    expect(page.get_by_role("heading", level=1)).to_have_text("Second title")

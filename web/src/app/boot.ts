@@ -5,6 +5,7 @@ import { shell } from "../ui/shell";
 import { App, messageOf, type Neighbours } from "./app";
 import type { Forms } from "./contract";
 import { commitPending, stepHistory } from "./editing";
+import { exportRaw } from "./files";
 import { follow, openJob, refreshJobs } from "./jobs";
 import { jobOf, parseRoute } from "./routes";
 import { NO_HISTORY, type Demo, type State } from "./state";
@@ -68,8 +69,32 @@ function firstState({ core, offline }: Neighbours): State {
 }
 
 function draw(app: App, root: HTMLElement): void {
-  render(shell(app), root);
-  document.title = titleOf(app);
+  try {
+    render(shell(app), root);
+    document.title = titleOf(app);
+  } catch (error) {
+    showFault(app, root, error);
+  }
+}
+
+/** A page that cannot be drawn is a fault of ours: say so plainly, and let the work out. */
+function showFault(app: App, root: HTMLElement, error: unknown): void {
+  console.error(error);
+  const place = document.createElement("div");
+  root.replaceWith(place);
+  const text = document.createElement("p");
+  text.className = "waiting is-bad";
+  text.setAttribute("role", "alert");
+  text.textContent = `This page cannot be drawn: ${messageOf(error)}. What was saved is safe. Load the page again.`;
+  const again = document.createElement("button");
+  again.textContent = "Load again";
+  again.addEventListener("click", () => location.reload());
+  place.append(text, again);
+  if (app.state.open === null) return;
+  const out = document.createElement("button");
+  out.textContent = "Export the job as it stands";
+  out.addEventListener("click", () => exportRaw(app));
+  place.append(out);
 }
 
 function titleOf(app: App): string {
@@ -110,7 +135,7 @@ function listenToCore(app: App): void {
     const was = app.state.core;
     const now = app.core.status;
     app.update({ core: now });
-    if (now.phase === "ready" && (was.phase !== "ready" || was.restarts !== now.restarts)) {
+    if (now.phase === "ready" && was.phase !== "ready") {
       void takeForms(app);
       askForAnswer(app);
     }

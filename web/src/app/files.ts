@@ -33,10 +33,14 @@ export async function takeFile(app: App, file: File): Promise<void> {
 }
 
 /** The copy of the same job on this tablet, if there is one. */
-async function mineFor(app: App, job: Row): Promise<Row | null> {
-  const id = String(job["id"] ?? "");
+async function mineFor(app: App, theirs: Row): Promise<Row | null> {
+  const id = String(theirs["id"] ?? "");
   if (id === "" || !(await app.store.list()).some((summary) => summary.id === id)) return null;
-  return (await app.store.open(id)).job;
+  if (app.state.open?.id === id) return app.state.open.job;
+  const { job } = await app.store.open(id);
+  // Only looked at: another window may go on writing it.
+  await app.store.close(id);
+  return job;
 }
 
 export function dropIncoming(app: App): void {

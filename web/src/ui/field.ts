@@ -2,7 +2,7 @@
 
 import { html, nothing, type TemplateResult } from "lit";
 import type { App } from "../app/app";
-import type { FieldGroup, FieldSpec, Forms, Issue } from "../app/contract";
+import type { Evaluation, FieldGroup, FieldSpec, Forms, Issue } from "../app/contract";
 import { choicesOf, forSystem, hasUnit, systemOf, tellingReading, unitIn, unitsOf, valueAt } from "../app/fields";
 import { get, join } from "../app/pointer";
 import { lettered } from "./letters";
@@ -68,8 +68,19 @@ export function severityWord(severity: Issue["severity"]): string {
   return SEVERITY_WORDS[severity];
 }
 
+const byPath = new WeakMap<Evaluation, Map<string, Issue[]>>();
+
+/** The issues of one place; sorted once for each answer, since every field asks. */
 function issuesAt(app: App, pointer: string): Issue[] {
-  return app.state.result?.evaluation.issues.filter((issue) => issue.path === pointer) ?? [];
+  const evaluation = app.state.result?.evaluation;
+  if (evaluation === undefined) return [];
+  let sorted = byPath.get(evaluation);
+  if (sorted === undefined) {
+    sorted = new Map();
+    for (const issue of evaluation.issues) sorted.set(issue.path, [...(sorted.get(issue.path) ?? []), issue]);
+    byPath.set(evaluation, sorted);
+  }
+  return sorted.get(pointer) ?? [];
 }
 
 function readingAt(app: App, pointer: string): string | null {

@@ -6,6 +6,7 @@ import { href } from "../app/routes";
 
 export function helpPage(app: App): TemplateResult {
   const core = app.state.result?.evaluation.core ?? app.state.forms?.core;
+  const boundary = app.state.forms?.words["boundary"];
   return html`<section class="page">
     <h1 tabindex="-1">How to type, and cautions</h1>
     <section class="part first">
@@ -32,6 +33,7 @@ export function helpPage(app: App): TemplateResult {
         <li>The numbers are worked out from what you enter, by the sources printed beside each step. Check them by hand.</li>
         <li>General figures for materials and sealants are a start. The maker's data sheet and a test on the wall come first.</li>
         <li>Who answers for a joint by law stays answerable for it. The app signs nothing.</li>
+        ${typeof boundary === "string" ? html`<li>${boundary}</li>` : ""}
       </ul>
     </section>
     ${core ? html`<p class="source">Core ${core.version}. Tables: ${core.tables.join(", ")}.</p>` : ""}

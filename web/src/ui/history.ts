@@ -21,7 +21,7 @@ export function historyPage(app: App): TemplateResult {
           <tbody>
             ${revisions.map(
               (item, at) => html`<tr data-testid="revision-${item.rev}">
-                <th scope="row" class="num">${item.rev}${item.pinned ? " pinned" : ""}${item.exported ? " exported" : ""}</th>
+                <th scope="row">${item.rev}${item.pinned ? " pinned" : ""}${item.exported ? " exported" : ""}</th>
                 <td>${clockText(item.savedAt)}</td>
                 <td>${item.reason}</td>
                 <td class="num">${bytesText(item.size)}</td>

@@ -124,8 +124,10 @@ function answersOf(app: App, answer: JointAnswer, id: string): TemplateResult {
         </section>` : nothing}
     ${notes(answer.notes ?? [])}
     ${own.length > 0 ? html`<section class="part" aria-labelledby="own-cautions"><h2 id="own-cautions">Take care</h2>${cautionsPart(app, own, id, false)}</section>` : nothing}
-    <div class="drawers">${tableDrawers(app, answer.tables ?? [], id)} ${workingPart(app, answer.steps ?? [], `working ${id}`)}</div>
-    <div class="actions part">
+    ${(answer.tables ?? []).length + (answer.steps ?? []).length > 0
+      ? html`<div class="drawers">${tableDrawers(app, answer.tables ?? [], id)} ${workingPart(app, answer.steps ?? [], `working ${id}`)}</div>`
+      : nothing}
+    <div class="actions">
       <a class="button" href=${href({ page: "sheet", job: app.open.id, joint: id })}>Sheet of this joint</a>
     </div>
   `;

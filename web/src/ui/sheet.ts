@@ -132,9 +132,11 @@ function jointSheet(app: App, forms: Forms, row: Row, index: number, answer: Joi
 
 function signature(app: App): TemplateResult {
   const core = app.state.result?.evaluation.core ?? app.state.forms?.core;
+  const boundary = app.state.forms?.words["boundary"];
   return html`<footer class="signatures">
     <div class="sign"><span>Prepared</span><span>Date</span></div>
     <div class="sign"><span>Checked</span><span>Date</span></div>
+    ${typeof boundary === "string" ? html`<p class="source">${boundary}</p>` : nothing}
     ${core ? html`<p class="source">Core ${core.version}. Tables: ${core.tables.join(", ")}.</p>` : nothing}
   </footer>`;
 }
