@@ -28,7 +28,9 @@ def demo(context: Any, url: str, theme: str = "paper") -> Page:
 
 
 def calculator_ready(page: Page) -> None:
-    expect(page.get_by_test_id("core-state")).to_have_attribute("data-phase", "ready", timeout=WORKING_LIMIT_MS)
+    expect(page.get_by_test_id("core-state")).to_have_attribute(
+        "data-phase", "ready", timeout=WORKING_LIMIT_MS
+    )
 
 
 def field(page: Page, pointer: str) -> Locator:
@@ -73,4 +75,8 @@ def verdict(page: Page) -> Locator:
 
 def drawn_width(page: Page) -> float:
     """Width of the bead in the drawing, in the drawing's own units."""
-    return float(page.locator("[data-testid=drawing] .bw-bead").first.evaluate("bead => bead.getBBox().width"))
+    return float(
+        page.locator("[data-testid=drawing] .bw-bead").first.evaluate(
+            "bead => bead.getBBox().width"
+        )
+    )

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from itertools import pairwise
 from pathlib import Path
 
 import pytest
@@ -53,9 +54,13 @@ def test_axe_finds_nothing_on_any_page(tablet, site, theme):
     for name in PAGES:
         show(page, site.url, name)
         page.evaluate(f"() => {{ {axe} ; return true }}")
-        result = page.evaluate("() => window.axe.run(document, {resultTypes: ['violations'], runOnly: ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'wcag2aaa', 'best-practice']})")
+        result = page.evaluate(
+            "() => window.axe.run(document, {resultTypes: ['violations'], runOnly: ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'wcag2aaa', 'best-practice']})"
+        )
         for item in result["violations"]:
-            found.setdefault(f"{name}: {item['id']}", [node["target"] for node in item["nodes"]][:3])
+            found.setdefault(
+                f"{name}: {item['id']}", [node["target"] for node in item["nodes"]][:3]
+            )
     assert found == {}
 
 
@@ -70,7 +75,12 @@ def test_texts_have_seven_to_one_and_lines_three_to_one(theme):
 
     for ground in ("paper", "field", "solid"):
         for text in ("ink", "soft", "accent", "ok", "warn", "bad"):
-            assert contrast(text, ground) >= 7, (theme, text, ground, round(contrast(text, ground), 2))
+            assert contrast(text, ground) >= 7, (
+                theme,
+                text,
+                ground,
+                round(contrast(text, ground), 2),
+            )
         assert contrast("line", ground) >= 3, (theme, ground, round(contrast("line", ground), 2))
     assert contrast("on-accent", "accent") >= 7
     assert contrast("hatch", "solid") >= 3 or contrast("ink", "solid") >= 7
@@ -81,13 +91,19 @@ def test_texts_have_seven_to_one_and_lines_three_to_one(theme):
 def read_tokens(theme):
     css = (WEB / "src" / "styles" / "tokens.css").read_text("utf-8")
     plain = re.search(r":root \{(.*?)\}", css, re.S).group(1)
-    own = "" if theme == "paper" else re.search(rf':root\[data-theme="{theme}"\] \{{(.*?)\}}', css, re.S).group(1)
+    own = (
+        ""
+        if theme == "paper"
+        else re.search(rf':root\[data-theme="{theme}"\] \{{(.*?)\}}', css, re.S).group(1)
+    )
     return dict(re.findall(r"--([\w-]+): (#[0-9a-f]{6});", plain + own))
 
 
 def luminance(colour):
     channels = [int(colour[at : at + 2], 16) / 255 for at in (1, 3, 5)]
-    red, green, blue = (c / 12.92 if c <= 0.04045 else ((c + 0.055) / 1.055) ** 2.4 for c in channels)
+    red, green, blue = (
+        c / 12.92 if c <= 0.04045 else ((c + 0.055) / 1.055) ** 2.4 for c in channels
+    )
     return 0.2126 * red + 0.7152 * green + 0.0722 * blue
 
 
@@ -129,7 +145,14 @@ def test_at_the_face_every_target_takes_a_glove(tablet, site):
     )
     assert small == 0
     # A verdict that is read at arm's length.
-    assert float(page.locator(".verdict-word").first.evaluate("el => parseFloat(getComputedStyle(el).fontSize)")) >= 36
+    assert (
+        float(
+            page.locator(".verdict-word").first.evaluate(
+                "el => parseFloat(getComputedStyle(el).fontSize)"
+            )
+        )
+        >= 36
+    )
 
 
 def test_neighbouring_targets_keep_their_distance(tablet, site):
@@ -179,7 +202,10 @@ def test_the_section_is_the_largest_thing_on_its_page(tablet, site):
     show(page, site.url, "joint")
     area = "el => { const b = el.getBoundingClientRect(); return b.width * b.height }"
     drawing = page.get_by_test_id("drawing").evaluate(area)
-    others = [part.evaluate(area) for part in page.locator(".verdict, .scrubber, .band, .issues, .joint-head, .field").all()]
+    others = [
+        part.evaluate(area)
+        for part in page.locator(".verdict, .scrubber, .band, .issues, .joint-head, .field").all()
+    ]
     assert drawing > max(others)
     # Verdict, section and scrubber stand together above the fold.
     bottom = page.get_by_test_id("scrubber").evaluate("el => el.getBoundingClientRect().bottom")
@@ -218,7 +244,9 @@ def tab_to(page, is_there, most=120):
     for _ in range(most):
         page.keyboard.press("Tab")
         if is_there():
-            assert page.evaluate("getComputedStyle(document.activeElement).outlineStyle !== 'none'"), "the focus does not show"
+            assert page.evaluate(
+                "getComputedStyle(document.activeElement).outlineStyle !== 'none'"
+            ), "the focus does not show"
             return
     raise AssertionError("the keyboard does not get there")
 
@@ -245,9 +273,14 @@ def test_landmarks_headings_language_and_live_region(tablet, site):
     for name in PAGES:
         show(page, site.url, name)
         assert page.locator("main").count() == 1 and page.locator("h1").count() == 1, name
-        levels = [int(tag[1]) for tag in page.locator("h1, h2, h3, h4").evaluate_all("list => list.filter(el => el.checkVisibility()).map(el => el.tagName)")]
+        levels = [
+            int(tag[1])
+            for tag in page.locator("h1, h2, h3, h4").evaluate_all(
+                "list => list.filter(el => el.checkVisibility()).map(el => el.tagName)"
+            )
+        ]
         assert levels[0] == 1, name
-        assert all(after - before <= 1 for before, after in zip(levels, levels[1:], strict=False)), (name, levels)
+        assert all(after - before <= 1 for before, after in pairwise(levels)), (name, levels)
     expect(page.get_by_test_id("spoken")).to_have_attribute("aria-live", "polite")
 
 
@@ -258,12 +291,21 @@ def test_a_verdict_is_a_word_and_a_mark_and_a_line_never_colour_alone(tablet, si
         page.goto(f"{site.url}{JOB}/joint/{joint}")
         word = page.locator(".verdict-word").first
         expect(word).to_be_visible(timeout=shell.WORKING_LIMIT_MS)
-        looks[word.locator("span").inner_text()] = word.evaluate("el => getComputedStyle(el).borderBottomStyle + ' ' + (el.querySelector('path')?.getAttribute('d') ?? '')")
+        looks[word.locator("span").inner_text()] = word.evaluate(
+            "el => getComputedStyle(el).borderBottomStyle + ' ' + (el.querySelector('path')?.getAttribute('d') ?? '')"
+        )
     assert len(looks) >= 3 and len(set(looks.values())) == len(looks)
 
 
 def test_reduced_motion_and_more_contrast_are_heeded(make_context, site):
     context = make_context(reduced_motion="reduce", contrast="more")
     page = shell.demo(context, site.url)
-    assert page.evaluate("getComputedStyle(document.documentElement).getPropertyValue('--soft').trim()") == page.evaluate("getComputedStyle(document.documentElement).getPropertyValue('--ink').trim()")
-    assert page.evaluate("getComputedStyle(document.querySelector('button')).transitionDuration") == "0s"
+    assert page.evaluate(
+        "getComputedStyle(document.documentElement).getPropertyValue('--soft').trim()"
+    ) == page.evaluate(
+        "getComputedStyle(document.documentElement).getPropertyValue('--ink').trim()"
+    )
+    assert (
+        page.evaluate("getComputedStyle(document.querySelector('button')).transitionDuration")
+        == "0s"
+    )

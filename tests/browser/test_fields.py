@@ -51,8 +51,14 @@ def go_to(page, where):
         page.locator('[data-more="job block"]').click()
 
 
-@pytest.mark.parametrize(("where", "pointer", "section", "typed", "stays", "words"), BAD, ids=lambda value: str(value)[-24:])
-def test_bad_input_is_told_at_its_field_and_stays_as_typed(wall, where, pointer, section, typed, stays, words):
+@pytest.mark.parametrize(
+    ("where", "pointer", "section", "typed", "stays", "words"),
+    BAD,
+    ids=lambda value: str(value)[-24:],
+)
+def test_bad_input_is_told_at_its_field_and_stays_as_typed(
+    wall, where, pointer, section, typed, stays, words
+):
     go_to(wall, where)
     if section is not None:
         shell.unfold(wall, pointer.rsplit("/", 1)[0], section)
@@ -79,12 +85,19 @@ def test_bad_input_outlives_a_reload_with_its_message(wall):
     shell.saved(wall)
     wall.reload()
     expect(shell.line(wall, f"{JOINT}/width")).to_have_value("potato")
-    expect(shell.field(wall, f"{JOINT}/width").get_by_test_id("message")).to_be_visible(timeout=shell.WORKING_LIMIT_MS)
+    expect(shell.field(wall, f"{JOINT}/width").get_by_test_id("message")).to_be_visible(
+        timeout=shell.WORKING_LIMIT_MS
+    )
 
 
 def test_a_contradiction_is_named_at_the_field(wall):
     shell.type_in(wall, f"{SITE}/winter_air", "45")
-    expect(shell.field(wall, f"{SITE}/winter_air").get_by_test_id("message").or_(shell.field(wall, f"{SITE}/summer_air").get_by_test_id("message")).first).to_be_visible()
+    expect(
+        shell.field(wall, f"{SITE}/winter_air")
+        .get_by_test_id("message")
+        .or_(shell.field(wall, f"{SITE}/summer_air").get_by_test_id("message"))
+        .first
+    ).to_be_visible()
     expect(shell.line(wall, f"{SITE}/winter_air")).to_have_value("45 °C")
 
 
@@ -164,8 +177,12 @@ def test_every_declared_field_is_drawn_with_its_label_help_control_and_unit(wall
                 continue
             shown += 1
             expect(found.locator(".field-label")).to_contain_text(spec["label"])
-            order = found.evaluate("field => [...field.children].map(child => child.className.split(' ')[0])")
-            assert [name for name in ("field-label", "help", "control", "message") if name in order] == list(dict.fromkeys(order))
+            order = found.evaluate(
+                "field => [...field.children].map(child => child.className.split(' ')[0])"
+            )
+            assert [
+                name for name in ("field-label", "help", "control", "message") if name in order
+            ] == list(dict.fromkeys(order))
             units = spec["units"]["metric"]
             if units:
                 offered = found.locator(".chip, .unit-list option, .unit").all_inner_texts()
@@ -174,7 +191,9 @@ def test_every_declared_field_is_drawn_with_its_label_help_control_and_unit(wall
 
 
 def test_an_unknown_kind_of_field_is_a_fault_and_not_a_guess():
-    source = (Path(__file__).resolve().parents[2] / "web" / "src" / "ui" / "widgets.ts").read_text("utf-8")
+    source = (Path(__file__).resolve().parents[2] / "web" / "src" / "ui" / "widgets.ts").read_text(
+        "utf-8"
+    )
     kinds = set(re.findall(r"^  (\w+): \w+Widget,$", source, re.M))
     from beadwright import desk
 
@@ -187,7 +206,10 @@ def test_the_shell_holds_no_knowledge_of_the_trade():
     """No unit factor, no formula, no trade table: it all comes from the core."""
     web = Path(__file__).resolve().parents[2] / "web" / "src"
     factor = re.compile(r"\b(25\.4|304\.8|0\.3048|459\.67|273\.15|9\s*/\s*5|5\s*/\s*9|1\.8)\b")
-    trade = re.compile(r"silicone|polyurethane|polysulfide|C920|11600|concrete|aluminium|movement class \d|dew point", re.IGNORECASE)
+    trade = re.compile(
+        r"silicone|polyurethane|polysulfide|C920|11600|concrete|aluminium|movement class \d|dew point",
+        re.IGNORECASE,
+    )
     for path in [*web.glob("app/**/*.ts"), *web.glob("ui/**/*.ts")]:
         text = path.read_text("utf-8")
         assert not factor.search(text), f"{path.name}: {factor.search(text)}"

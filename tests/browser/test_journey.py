@@ -32,8 +32,34 @@ class Journey:
 
 
 JOURNEYS = {
-    "metric": Journey("new-metric", "32", "-14", "4,8 m", "15 ft 9 in", "6", "6 mm", "0.236 in", "24", "24", "12", "11"),
-    "inch": Journey("new-inch", "90", "7", "12' 6 1/2\"", "3.823 m", "5/16", "5/16 in", "7.9 mm", "1 1/4", "1 1/4", "54", "52"),
+    "metric": Journey(
+        "new-metric",
+        "32",
+        "-14",
+        "4,8 m",
+        "15 ft 9 in",
+        "6",
+        "6 mm",
+        "0.236 in",
+        "24",
+        "24",
+        "12",
+        "11",
+    ),
+    "inch": Journey(
+        "new-inch",
+        "90",
+        "7",
+        "12' 6 1/2\"",
+        "3.823 m",
+        "5/16",
+        "5/16 in",
+        "7.9 mm",
+        "1 1/4",
+        "1 1/4",
+        "54",
+        "52",
+    ),
 }
 
 
@@ -56,7 +82,9 @@ def test_a_joint_is_sized_read_checked_at_the_face_and_printed(tablet, site, sys
     expect(page.locator("main[data-page=joint]")).to_be_visible()
     shell.pick(page, "/joints/0/side_a/substrate", "concrete-precast")
     shell.type_in(page, "/joints/0/side_a/length", journey.length)
-    expect(shell.field(page, "/joints/0/side_a/length").locator(".reads")).to_contain_text(journey.length_reads)
+    expect(shell.field(page, "/joints/0/side_a/length").locator(".reads")).to_contain_text(
+        journey.length_reads
+    )
     page.get_by_test_id("same-sides").click()
     expect(shell.line(page, "/joints/0/side_b/length")).to_have_value(journey.length)
 
@@ -67,7 +95,9 @@ def test_a_joint_is_sized_read_checked_at_the_face_and_printed(tablet, site, sys
     # Too narrow: the word comes first, with its reason; the bare number took the unit of the chip.
     shell.type_in(page, "/joints/0/width", journey.narrow)
     expect(shell.line(page, "/joints/0/width")).to_have_value(journey.narrow_kept)
-    expect(shell.field(page, "/joints/0/width").locator(".reads")).to_contain_text(journey.narrow_reads)
+    expect(shell.field(page, "/joints/0/width").locator(".reads")).to_contain_text(
+        journey.narrow_reads
+    )
     expect(shell.verdict(page)).to_have_attribute("data-verdict", "beyond")
     expect(shell.verdict(page).locator("svg.mark")).to_be_visible()
 
@@ -84,7 +114,9 @@ def test_a_joint_is_sized_read_checked_at_the_face_and_printed(tablet, site, sys
     page.keyboard.press("End")
     expect(page.get_by_test_id("frame-title")).not_to_have_text(coldest)
     assert shell.drawn_width(page) < open_width
-    assert scrubber.get_attribute("aria-valuetext").startswith(page.get_by_test_id("frame-title").inner_text())
+    assert scrubber.get_attribute("aria-valuetext").startswith(
+        page.get_by_test_id("frame-title").inner_text()
+    )
 
     # At the face.
     page.get_by_test_id("to-face").click()
@@ -106,7 +138,9 @@ def test_a_joint_is_sized_read_checked_at_the_face_and_printed(tablet, site, sys
     steps = page.locator(".joint-sheet .step")
     expect(steps.first).to_be_visible()
     assert steps.count() > 10
-    assert all(text.strip() for text in steps.locator(".step-source").all_inner_texts()), "a step without a source"
+    assert all(text.strip() for text in steps.locator(".step-source").all_inner_texts()), (
+        "a step without a source"
+    )
     page.emulate_media(media="print")
     expect(page.locator(".head")).to_be_hidden()
     expect(page.get_by_text("Prepared", exact=True)).to_be_visible()
@@ -173,7 +207,13 @@ def test_the_page_is_of_use_before_the_calculator_is_ready(make_context, site):
     page = shell.demo(context, site.url)
     page.close()
     # The wasm never comes: jobs can still be read and typed into, and the page says what it waits for.
-    site.intercept = lambda path: Reply(status=503) if path.endswith((".wasm", ".bin.gz", ".snapshot.gz")) or "/py/" in path or "snapshot/" in path else None
+    site.intercept = lambda path: (
+        Reply(status=503)
+        if path.endswith((".wasm", ".bin.gz", ".snapshot.gz"))
+        or "/py/" in path
+        or "snapshot/" in path
+        else None
+    )
     late = make_context()
     page = late.new_page()
     page.goto(site.url + "#/demo/harbour-hall")
@@ -183,7 +223,9 @@ def test_the_page_is_of_use_before_the_calculator_is_ready(make_context, site):
     expect(shell.line(page, "/joints/0/width")).to_have_value("18 mm")
     shell.saved(page)
     expect(page.get_by_test_id("core-state")).not_to_have_attribute("data-phase", "ready")
-    expect(page.locator(".sheet .waiting").first).to_contain_text(re.compile("Working starts when ready|Stopped"))
+    expect(page.locator(".sheet .waiting").first).to_contain_text(
+        re.compile("Working starts when ready|Stopped")
+    )
 
 
 def test_two_windows_one_writes_and_the_other_takes_over(tablet, site):
@@ -237,7 +279,9 @@ def test_a_file_is_looked_at_before_it_changes_anything(tablet, site, tmp_path):
     ],
     ids=["empty", "truncated", "not text", "foreign"],
 )
-def test_a_bad_file_gets_a_plain_answer_and_changes_nothing(tablet, site, tmp_path, content, message):
+def test_a_bad_file_gets_a_plain_answer_and_changes_nothing(
+    tablet, site, tmp_path, content, message
+):
     page = shell.home(tablet, site.url)
     path = tmp_path / "strange.json"
     path.write_bytes(content)
@@ -298,7 +342,9 @@ def test_a_full_journey_breaks_no_policy(tablet, site):
     page.get_by_role("link", name="Sheet", exact=True).click()
     expect(page.locator(".joint-sheet").first).to_be_visible()
     assert tablet.requests.page_errors == []
-    assert [text for text in tablet.requests.console_errors if "Content Security Policy" in text] == []
+    assert [
+        text for text in tablet.requests.console_errors if "Content Security Policy" in text
+    ] == []
 
 
 # A page that is killed hears nothing beforehand: no event that it could save at.
@@ -347,7 +393,12 @@ def test_every_export_comes_out(tablet, site, tmp_path):
     page = shell.demo(tablet, site.url)
     page.get_by_role("link", name="Sheet", exact=True).click()
     expect(page.locator(".joint-sheet").first).to_be_visible()
-    for kind, sign in (("job", b"beadwright-job"), ("sheet", b"<!doctype html>"), ("text", b"Harbour Hall"), ("schedule", b"Precast panel to panel")):
+    for kind, sign in (
+        ("job", b"beadwright-job"),
+        ("sheet", b"<!doctype html>"),
+        ("text", b"Harbour Hall"),
+        ("schedule", b"Precast panel to panel"),
+    ):
         with page.expect_download() as waiting:
             page.get_by_test_id(f"export-{kind}").click()
         path = tmp_path / waiting.value.suggested_filename
