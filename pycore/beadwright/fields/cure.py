@@ -75,6 +75,8 @@ SEALED = Group(
         Field("joint", "Joint", "reference", table="joints", required=True, section="Run"),
         Field("when", "Sealed on", "text", section="Run", example=_WHEN, help="Local clock. Empty: planned; the best hour of the weather is taken."),
         span_field("length", "Length", section="Run", above=True, hard_min=0.0, hard_max=1e7, example={METRIC: "12 m", INCH: "40 ft"}),
+        Field("place", "It cures in", "choice", default="weather", section="Run",
+              choices=(Choice("weather", "The weather"), Choice("room", "The room, in its own air", "Air and humidity are those entered for the room."))),
         Field("shape", "Bead", "choice", default="joint", section="Bead",
               choices=(Choice("joint", "As the joint"), Choice("fillet", "Fillet in a corner"))),
         length_field("leg_a", "Leg A", section="Bead", show_when={"shape": ("fillet",)}, above=True, hard_min=0.0, hard_max=100.0, example={METRIC: "8 mm", INCH: "5/16 in"}),

@@ -453,32 +453,29 @@ def _pictured(shape: tuple[Any, ...], faces: frozenset[str]) -> Picture:
         ahead = now
     total = float(loads.sum())
     uncured = np.where(ahead, push, 0.0).sum(axis=(1, 2)) / total
-    arrival = _arrival(np, field, psi, levels, top, ahead, held)
+    arrival = _arrival(np, field, psi, levels, top, held)
     shares = [min(1.0, max(0.0, 1.0 - float(item))) for item in uncured]
     # the picture's grid is coarse; its scale is that of the finer answer
     scale = _solved(shape, faces).reach_mm2 / top
     return Picture(x.tolist(), y.tolist(), (scale * arrival).tolist(), [scale * float(item) for item in levels] + [scale * top], [*shares, 1.0])
 
 
-def _arrival(np: Any, field: Any, psi: Any, levels: Any, top: float, ahead: Any, held: Any) -> Any:
-    """Level at which the front passes each node, drawn back from how far the field lies below its bound just afterwards.
+def _arrival(np: Any, field: Any, psi: Any, levels: Any, top: float, held: Any) -> Any:
+    """Level at which the front passes each node, drawn back from how far the field lies below its bound some time afterwards.
 
-    The root of the shortfall grows in step with the root of the level, exactly so in a slab.
+    The root of the shortfall grows in step with the root of the level, exactly so in a slab. Each level has its say with a
+    weight that vanishes at the front itself, where the grid blurs, and far behind it.
     """
-    roots = np.sqrt(np.append(levels, top))
-    short = np.sqrt(np.maximum(np.append(levels, top)[:, None, None] - np.concatenate((field, psi[None])), 0.0))
-    first = np.concatenate((ahead, np.zeros((1, *psi.shape), dtype=bool))).sum(axis=0)
-    passed = np.minimum(first, LEVELS - 1)
-    # the level just behind the front is within the grid's own blur; one farther on is used where there is one
-    at = np.minimum(passed + 1, LEVELS - 1)
-    following = np.minimum(at + 1, LEVELS - 1)
-
-    def taken(array: Any, index: Any) -> Any:
-        return np.take_along_axis(array, index[None], 0)[0]
-
-    low = np.where(passed > 0, roots[np.maximum(passed - 1, 0)], 0.0)
-    here, there = taken(short, at), taken(short, following)
-    slope = np.where(following > at, (there - here) / np.maximum(roots[following] - roots[at], 1e-300), 1.0)
-    back = roots[at] - here / np.maximum(slope, 0.25)
-    arrival = np.clip(back, low, roots[passed]) ** 2
+    bounds = np.append(levels, top)
+    roots = np.sqrt(bounds)[:, None, None]
+    step = float(roots[1, 0, 0] - roots[0, 0, 0])
+    short = np.sqrt(np.maximum(bounds[:, None, None] - np.concatenate((field, psi[None])), 0.0))
+    slope = np.ones_like(short)
+    slope[:-1] = np.where(short[:-1] > 0.0, (short[1:] - short[:-1]) / step, 1.0)
+    slope[-1] = np.where(short[-2] > 0.0, slope[-2], 1.0)
+    steps_behind = short / step
+    weight = steps_behind**2 * np.exp(-1.5 * steps_behind)
+    total = weight.sum(axis=0)
+    drawn = (weight * (roots - short / np.maximum(slope, 0.3))).sum(axis=0)
+    arrival = np.where(total > 1e-12, np.clip(drawn / np.maximum(total, 1e-300), 0.0, roots[-1]), roots[-1]) ** 2
     return np.where(held, 0.0, arrival)

@@ -1,0 +1,1 @@
+"""The cure clock: weather, front, stages, movement while green, two-part cure, by-products in a room."""
