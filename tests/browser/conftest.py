@@ -80,6 +80,14 @@ def until(page: Any, expression: str, limit_ms: int = LIMIT_MS) -> Any:
     raise AssertionError(f"not within {limit_ms / 1000} s: {expression} (last: {value!r})")
 
 
+def told(page: Any, expression: str, limit_ms: int = LIMIT_MS) -> Any:
+    """The value of a promise of the page, or a failure when it never settles."""
+    late = f"new Promise((go) => setTimeout(() => go('no answer'), {limit_ms}))"
+    value = page.evaluate(f"Promise.race([{expression}, {late}])")
+    assert value != "no answer", f"not settled within {limit_ms / 1000} s: {expression}"
+    return value
+
+
 @pytest.fixture(scope="session")
 def playwright() -> Iterator[Any]:
     with playwright_api.sync_playwright() as running:

@@ -10,7 +10,7 @@ from typing import Any
 import pytest
 from server import Reply, Site
 
-from .conftest import until
+from .conftest import told, until
 
 pytestmark = pytest.mark.browser
 
@@ -251,9 +251,10 @@ def test_a_missing_runtime_file_is_named_instead_of_hanging(make_context, core_s
 def test_the_newest_call_wins(make_context, core_site):
     page = opened(make_context(), core_site, "?nosw")
     answer_of(page)
-    got = page.evaluate(
-        """() => Promise.all([1, 2, 3, 4].map((n) =>
-             core.call('blank', [n === 4 ? 'inch' : 'metric'], {key: 'one'}).then((job) => job.units, (error) => error.name)))"""
+    got = told(
+        page,
+        """Promise.all([1, 2, 3, 4].map((n) =>
+             core.call('blank', [n === 4 ? 'inch' : 'metric'], {key: 'one'}).then((job) => job.units, (error) => error.name)))""",
     )
     assert got == ["Superseded", "Superseded", "Superseded", "inch"]
     assert status_of(page)["restarts"] == 0
@@ -265,7 +266,7 @@ def test_a_hung_or_dead_worker_is_restarted_and_the_question_repeated(make_conte
     answer_of(page)
     worker = page.workers[0]
     worker.evaluate(f"setTimeout(() => {{ {harm} }}, 0)")
-    units = page.evaluate("core.call('blank', ['inch']).then((job) => job.units, (error) => error.code)")
+    units = told(page, "core.call('blank', ['inch']).then((job) => job.units, (error) => error.code)")
     assert units == "inch"
     assert status_of(page)["restarts"] == 1 and status_of(page)["phase"] == "ready"
 
@@ -276,10 +277,10 @@ def test_a_question_that_kills_the_worker_twice_is_given_up_and_the_next_one_is_
     core_site.intercept = lambda asked: Reply(worker.read_bytes() + trap.encode()) if asked == worker.name else None
     page = opened(make_context(), core_site, "?nosw&limit=3000")
     answer_of(page)
-    code = page.evaluate("core.call('forms', []).then(() => 'answered', (error) => error.code)")
+    code = told(page, "core.call('forms', []).then(() => 'answered', (error) => error.code)")
     assert code == "CORE-LOST"
     until(page, "core.status.phase === 'ready'")
-    assert page.evaluate("core.call('blank', ['metric']).then((job) => job.units)") == "metric"
+    assert told(page, "core.call('blank', ['metric']).then((job) => job.units)") == "metric"
     assert status_of(page)["restarts"] == 2
 
 
@@ -289,7 +290,7 @@ def test_a_fault_in_python_comes_back_with_a_reference_and_harms_nothing(make_co
     for method, params in (("nonsense", []), ("blank", ["metric", "too", "many"])):
         got = page.evaluate("([method, params]) => core.call(method, params).then(() => 'answered', (error) => [error.name, error.code])", [method, params])
         assert got[0] == "CoreFault" and got[1].startswith("PY-")
-    assert page.evaluate("core.call('blank', ['metric']).then((job) => job.units)") == "metric"
+    assert told(page, "core.call('blank', ['metric']).then((job) => job.units)") == "metric"
     assert status_of(page)["restarts"] == 0
 
 
