@@ -9,11 +9,13 @@ from __future__ import annotations
 import json
 from collections.abc import Iterable, Mapping
 from functools import cache, lru_cache
+from importlib.util import find_spec
 from typing import Any
 
 from attrs import frozen
 
 from . import __version__, catalogue
+from .curing.inputs import joints_named
 from .design.cautions import cautions_of_job, cautions_of_joint
 from .design.inputs import OWN_CLASS, Project, joint_rows, read_joint, read_project
 from .design.joint import judge
@@ -21,13 +23,13 @@ from .field.face import at_the_face
 from .fields import GROUPS, Choice, Field, Reads
 from .job import blank, blank_row, compare, merge, open_bytes, to_bytes
 from .quantity import INCH, METRIC, sign_of
-from .sheet import joint_sheet, printed, schedule
+from .sheet import calendar, cure_print, cure_sheet, joint_sheet, printed, schedule
 from .sheet.face_sheet import FACE_WORDS
 from .working import Issue
 
 __all__ = ["blank", "blank_row", "compare", "evaluate", "export", "forms", "frames", "merge", "open_file"]
 
-EXPORT_KINDS = ("job", "sheet", "text", "schedule")
+EXPORT_KINDS = ("job", "sheet", "text", "schedule", "calendar", "cure-sheet")
 _NOT_SHARED = ("joints", "takeoff", "cure", "surveys")
 
 
@@ -132,7 +134,8 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
         A decoded job file; anything else yields issues, not an exception.
     only : iterable of str, optional
         Ids of the joints to give in full; the others come in short form (verdict and headline,
-        no figures and no readings). None: all in full.
+        no figures and no readings). None: all in full. The cure part is worked out only when
+        `only` is None or holds `"cure"`; else it is `{"short": True}`.
 
     Returns
     -------
@@ -154,13 +157,16 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
         issues += one.issues
         if full:
             readings.update(one.readings)
+    cure = _cure(job, shared, wanted)
+    issues += cure.issues
+    readings.update(cure.readings)
     return {
         "core": _core(),
         "issues": [issue.as_dict() for issue in [*rows.issues, *issues]],
         "readings": readings,
         "joints": answers,
         "takeoff": {},
-        "cure": {},
+        "cure": cure.answer,
         "surveys": {},
         "cautions": _cautions(project, by_joint),
         "facts": _facts(project),
@@ -204,6 +210,25 @@ def _answer(shared: str, joint_id: str, path: str, row: str, *, full: bool) -> _
     face = at_the_face(judged, project)
     answer = joint_sheet.joint_dict(judged, face, project.system, [item.id for item in found], full=full)
     return _Answer(answer, found, tuple(joint.reads.issues), joint.reads.readings)
+
+
+def _cure(job: object, shared: str, wanted: set[str] | None) -> cure_sheet.CurePart:
+    """The cure part; an empty one costs nothing, an unchanged one is kept."""
+    raw = job.get("cure") if isinstance(job, Mapping) else None
+    if not raw:
+        return cure_sheet.CurePart({})
+    if wanted is not None and "cure" not in wanted:
+        return cure_sheet.CurePart({"short": True})
+    every = list(joint_rows(job, Reads(METRIC)))
+    named = joints_named(raw)
+    rows = {joint_id: (path, row) for joint_id, path, row in every if joint_id in named}
+    return _cure_part(shared, _text(raw), _text(rows), tuple(joint_id for joint_id, _, _ in every), has_numpy=find_spec("numpy") is not None)
+
+
+@lru_cache(maxsize=8)
+def _cure_part(shared: str, raw: str, rows: str, joint_ids: tuple[str, ...], *, has_numpy: bool) -> cure_sheet.CurePart:
+    whole = json.loads(shared)
+    return cure_sheet.cure_part(json.loads(raw), _project(shared), json.loads(rows), joint_ids, str(whole.get("id") or ""))
 
 
 def _cautions(project: Project, by_joint: Mapping[str, tuple[catalogue.Caution, ...]]) -> list[dict[str, Any]]:
@@ -269,7 +294,8 @@ def export(job: dict[str, Any], kind: str) -> tuple[str, str, bytes]:
     job : dict
         A decoded job file.
     kind : str
-        `job` (JSON), `sheet` (printable HTML), `text`, or `schedule` (CSV).
+        `job` (JSON), `sheet` (printable HTML), `text`, `schedule` (CSV), `calendar` (RFC 5545) or
+        `cure-sheet` (printable HTML).
 
     Returns
     -------
@@ -286,11 +312,16 @@ def export(job: dict[str, Any], kind: str) -> tuple[str, str, bytes]:
         return f"{stem}.beadwright.json", "application/json", to_bytes(job)
     if kind not in EXPORT_KINDS:
         raise ValueError(f"kind must be one of {', '.join(EXPORT_KINDS)}; got {kind!r}")
+    if kind == "calendar":
+        cure = _cure(job, _shared_text(job), None)
+        return f"{stem}.ics", "text/calendar", calendar.calendar_bytes(cure.events, cure.clock, str(job.get("title") or "Cure"))
     answer = evaluate(job)
+    if kind == "cure-sheet":
+        return f"{stem}-cure.html", "text/html", cure_print.cure_html(job, answer)
     if kind == "sheet":
         return f"{stem}.html", "text/html", printed.sheet_html(job, answer)
     if kind == "text":
-        return f"{stem}.txt", "text/plain", printed.sheet_text(job, answer).encode("utf-8")
+        return f"{stem}.txt", "text/plain", (printed.sheet_text(job, answer) + cure_print.cure_text(answer)).encode("utf-8")
     return f"{stem}-schedule.csv", "text/csv", schedule.schedule_csv(answer["joints"].values())
 
 

@@ -153,7 +153,7 @@ class Climate:
 
     def _standing_in(self, hours: float) -> float:
         days, rest = divmod(hours, 24.0)
-        whole = int(rest)
+        whole = min(int(rest), 23)
         return days * self.day_dose + self.day_doses[whole] + (rest - whole) * (self.day_doses[whole + 1] - self.day_doses[whole])
 
     def dose(self, hours: float) -> float:

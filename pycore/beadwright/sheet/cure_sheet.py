@@ -297,7 +297,7 @@ def _green_bands(item: RunAnswer, answer: CureAnswer, system: str) -> list[Band]
     if item.hours:
         if item.best is None:
             reasons = ", ".join(dict.fromkeys(_REFUSED_WORDS[hour.refused] for hour in item.hours if hour.refused))
-            bands.append(_band("best", "Best hour to seal?", "None in this weather", f"Every working hour is refused: {reasons}.", "bad"))
+            bands.append(_band("best", "Best hour to seal?", "No hour in this weather", f"Every working hour is refused: {reasons}.", "bad"))
         else:
             over = item.green_limit is not None and item.best.share > item.green_limit + 1e-9
             detail = f"Then {writing.percent(item.best.share)} of the width while green, surface {writing.temperature(round(item.best.surface_c, 1), system)}."
@@ -568,7 +568,7 @@ def _room_bands(room: RoomAnswer) -> list[Band]:
         bands.append(_band("room", f"Is the air fit to breathe ({agent.agent_label})?", "Below the limits" if good else f"Over the limit, {plain(ratio, 1)} times", f"{peak} Governs: {worst.limit.authority}, {_span_word(worst.limit.span)}, {plain(worst.limit_mg_m3, 1)} mg/m³. Screening only.", "ok" if good else "bad"))
         needs = [item.changes_per_h for item in room.against]
         if any(need is None for need in needs):
-            bands.append(_band("air-change", "Which air change keeps below?", "None that a room can have", "Use less, another sealant, or breathing protection chosen by a specialist.", "bad"))
+            bands.append(_band("air-change", "Which air change keeps below?", "No air change that a room can have", "Use less, another sealant, or breathing protection chosen by a specialist.", "bad"))
         else:
             most = max(need for need in needs if need is not None)
             bands.append(_band("air-change", "Which air change keeps below?", "No air change is needed" if most <= 0.0 else f"{plain(most, 1)} an hour or more", f"Now {plain(room.changes_per_h or 0.0, 1)} an hour, mixing factor {plain(room.mixing or 1.0, 1)}.", "plain"))
