@@ -29,10 +29,10 @@ const ordinary = await answer({ packages: ["beadwright"], env: { HOME: "/home/py
 if (!JSON.parse(restored.text).ok) throw new Error(`the restored snapshot fails: ${restored.text.slice(0, 2000)}`);
 if (restored.text !== ordinary.text) throw new Error("the restored snapshot answers otherwise than the precompiled start");
 
-// What the page does later: the files of the packages, then numpy, into the restored memory.
+// What the page does later: the files of the packages, then numpy and openpyxl, into the restored memory.
 const failures = [];
-await restored.pyodide.loadPackage(["beadwright", "numpy"], { errorCallback: (text) => failures.push(text), messageCallback: () => {} });
-const sum = restored.pyodide.runPython("import numpy, importlib.metadata; importlib.metadata.version('pint') and float(numpy.arange(5.0).sum())");
-if (failures.length || sum !== 10) throw new Error(`numpy does not load into the restored snapshot: ${failures.join("; ")}`);
-process.stdout.write(`restored in ${restored.ms} ms, precompiled ${ordinary.ms} ms, same answer, numpy loads after it\n`);
+await restored.pyodide.loadPackage(["beadwright", "numpy", "openpyxl"], { errorCallback: (text) => failures.push(text), messageCallback: () => {} });
+const sum = restored.pyodide.runPython("import numpy, openpyxl, importlib.metadata; importlib.metadata.version('pint') and float(numpy.arange(5.0).sum())");
+if (failures.length || sum !== 10) throw new Error(`numpy and openpyxl do not load into the restored snapshot: ${failures.join("; ")}`);
+process.stdout.write(`restored in ${restored.ms} ms, precompiled ${ordinary.ms} ms, same answer, numpy and openpyxl load after it\n`);
 process.exit(0);

@@ -10,6 +10,7 @@ import { CACHE, ROOT, WEB, fail, hashOf, listing, sha256, short, write } from ".
 const PYODIDE = join(WEB, "node_modules", "pyodide");
 const BUILD = join(WEB, "build");
 const RUNTIME_FILES = ["pyodide.mjs", "pyodide.asm.mjs", "pyodide.asm.wasm", "python_stdlib.zip"];
+const OWN_OPTIMIZE = 2; // our docstrings are for readers of the source: a third of the wheel
 const SITE = "/lib/python3.14/site-packages/";
 
 const node = (script, job, folder) => {
@@ -91,9 +92,11 @@ function pureWheels(python) {
   });
 }
 
-const DEPENDS = { pint: ["flexcache", "flexparser", "platformdirs", "typing-extensions"], cattrs: ["attrs", "typing-extensions"], flexparser: ["typing-extensions"], flexcache: ["typing-extensions"] };
-const IMPORTS = { attrs: ["attr", "attrs"], "typing-extensions": ["typing_extensions"] };
-const FROM_CORE = { pint: /^\s*(import|from) pint\b/m, attrs: /^\s*(import|from) attrs?\b/m, cattrs: /^\s*(import|from) cattrs\b/m };
+const DEPENDS = { pint: ["flexcache", "flexparser", "platformdirs", "typing-extensions"], cattrs: ["attrs", "typing-extensions"], flexparser: ["typing-extensions"], flexcache: ["typing-extensions"], openpyxl: ["et-xmlfile"] };
+const IMPORTS = { attrs: ["attr", "attrs"], "typing-extensions": ["typing_extensions"], "et-xmlfile": ["et_xmlfile"] };
+const FROM_CORE = { pint: /^\s*(import|from) pint\b/m, attrs: /^\s*(import|from) attrs?\b/m, cattrs: /^\s*(import|from) cattrs\b/m, openpyxl: /^\s*(import|from) openpyxl\b/m };
+// Loaded by the worker when first needed (bridge.py names them): no start waits for these, and no snapshot holds them.
+const LATE = ["numpy", "openpyxl", "et-xmlfile"];
 
 /** Only what the core imports travels to the browser, with what that needs in turn. */
 function neededBy(sources) {
@@ -141,7 +144,7 @@ export function buildRuntime() {
 
   const own = stage("core", hashOf([...compiler, join(BUILD, "python", "own_wheel.py"), bridge, join(ROOT, "pyproject.toml"), join(ROOT, "LICENSE"), ...coreSources()]), (out) => {
     const base = run(python, [join(BUILD, "python", "own_wheel.py"), join(out, "source")], "making the core's wheel");
-    node("compile_python.mjs", [{ source: join(out, "source", base), target: join(out, base), prefix: SITE, optimize: 0, wheel: true }], out);
+    node("compile_python.mjs", [{ source: join(out, "source", base), target: join(out, base), prefix: SITE, optimize: OWN_OPTIMIZE, wheel: true }], out);
   });
   const ownBase = readdirSync(own).find((name) => name.endsWith(".whl"));
   const coreVersion = ownBase.split("-")[1];
@@ -150,7 +153,7 @@ export function buildRuntime() {
   const packages = [
     ...pure.filter((wheel) => needed.all.includes(wheel.name)).map((wheel) => ({ ...wheel, file: join(library, wheel.base), depends: DEPENDS[wheel.name] ?? [], imports: IMPORTS[wheel.name] ?? [wheel.name] })),
     { ...numpy, file: join(library, numpy.base) },
-    { name: "beadwright", version: coreVersion, file: join(own, ownBase), base: ownBase, depends: needed.direct, imports: ["beadwright", "beadwright_bridge"] },
+    { name: "beadwright", version: coreVersion, file: join(own, ownBase), base: ownBase, depends: needed.direct.filter((name) => !LATE.includes(name)), imports: ["beadwright", "beadwright_bridge"] },
   ].map((item) => ({ ...item, data: readFileSync(item.file) }));
 
   const lock = { info: theirs.info, packages: {} };
@@ -174,7 +177,7 @@ export function buildRuntime() {
     writeFileSync(lockFile, lockText);
     const raw = join(out, "snapshot.bin");
     const common = { runtime: `${runtime}/`, stdlib: join(runtime, "python_stdlib.zip"), demo };
-    const { said, heapBytes } = JSON.parse(node("make_snapshot.mjs", { ...common, lock: lockFile, wheels: packages.filter((item) => item.name !== "numpy").map((item) => item.file), target: raw }, out));
+    const { said, heapBytes } = JSON.parse(node("make_snapshot.mjs", { ...common, lock: lockFile, wheels: packages.filter((item) => !LATE.includes(item.name)).map((item) => item.file), target: raw }, out));
     const checked = node("check_restore.mjs", { ...common, lock: lockFile, packages: `${join(runtime, "packages")}/`, snapshot: raw, heapBytes }, out);
     process.stdout.write(`build: snapshot of ${said}; ${checked}\n`);
     const bytes = readFileSync(raw);
@@ -196,7 +199,7 @@ export function buildRuntime() {
   files.set("licences/numpy.txt", readFileSync(join(WEB, "vendor", "numpy", "LICENSE.txt")));
 
   const size = (url) => ({ url, bytes: files.get(url).length });
-  const first = [...RUNTIME_FILES.map((name) => base + name), ...packages.filter((item) => item.name !== "numpy").map((item) => `packages/${lock.packages[item.name].file_name}`)];
+  const first = [...RUNTIME_FILES.map((name) => base + name), ...packages.filter((item) => !LATE.includes(item.name)).map((item) => `packages/${lock.packages[item.name].file_name}`)];
   return {
     files,
     still,

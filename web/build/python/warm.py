@@ -42,7 +42,7 @@ _ask("evaluate", _job, _ids)
 _answer = _ask("evaluate", _job)
 for _units in ("metric", "inch"):
     _ask("blank", _units)
-for _kind in ("job", "sheet", "text", "schedule"):
+for _kind in ("job", "sheet", "text", "schedule", "takeoff-csv"):
     _ask("export", _job, _kind)
 for _id in _ids[:1]:
     _ask("frames", _job, _id)

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import base64
 import hashlib
+import importlib.util
 import json
 import os
 import sys
@@ -19,8 +20,11 @@ from beadwright import desk
 
 METHODS = (
     "forms", "evaluate", "export", "frames", "open_file", "blank", "blank_row", "compare", "merge",
+    "paste_runs", "compare_takeoff",
 )
 _BYTES = "$bytes"
+# Packages that only some exports need: the worker brings them before it asks.
+_LATE = {"takeoff-xlsx": ("openpyxl",)}
 
 
 def _arriving(value: Any) -> Any:
@@ -54,6 +58,15 @@ def _fault(error: BaseException) -> dict[str, Any]:
         # after these the interpreter's state is in doubt: the page restarts the worker
         "fatal": isinstance(error, (MemoryError, SystemError, SystemExit, KeyboardInterrupt)),
     }
+
+
+def wanted(method: str, params_text: str) -> str:
+    """The packages that this call needs and that are not there yet, between blanks."""
+    if method != "export":
+        return ""
+    params = json.loads(params_text)
+    names = _LATE.get(str(params[1]), ()) if len(params) > 1 else ()
+    return " ".join(name for name in names if importlib.util.find_spec(name) is None)
 
 
 def call(method: str, params_text: str) -> str:

@@ -14,7 +14,7 @@ const STALL_LIMIT_MS = 30_000;
 const NUMPY_IDLE_MS = 1_000;
 const PROGRESS_EVERY_MS = 100;
 
-type Bridge = { call(method: string, paramsText: string): string; settle(zone: string, language: string): string };
+type Bridge = { call(method: string, paramsText: string): string; wanted(method: string, paramsText: string): string; settle(zone: string, language: string): string };
 type Loader = { loadPyodide(options: Record<string, unknown>): Promise<PyodideInterface> };
 
 const birth = performance.now();
@@ -234,13 +234,16 @@ async function start(message: StartMessage): Promise<void> {
 
 // ---- calls ------------------------------------------------------------------------------------
 
-function answer({ id, method, paramsText }: CallMessage): void {
+async function answer({ id, method, paramsText }: CallMessage): Promise<void> {
   if (!bridge) {
     say({ type: "fatal", id, reason: "Python is not there" });
     return;
   }
   let text: string;
   try {
+    const late = bridge.wanted(method, paramsText);
+    // Without them the core says itself, in words for people, what it lacks.
+    if (late !== "") await loadLate(late.split(" ")).catch(() => undefined);
     text = bridge.call(method, paramsText);
   } catch (error) {
     // The bridge catches all that Python raises: what comes here is the interpreter breaking down.
@@ -249,6 +252,12 @@ function answer({ id, method, paramsText }: CallMessage): void {
   }
   say({ type: "answer", id, text });
   scheduleNumpy();
+}
+
+/** Packages from the stored files, once Python runs. */
+async function loadLate(names: string[]): Promise<void> {
+  // After a restore the packages' files are missing from the file system: bring them too.
+  if (pyodide) await loadOrThrow(pyodide, startedBy === "snapshot" ? ["beadwright", ...names] : names);
 }
 
 let numpyState: "absent" | "loading" | "done" = "absent";
@@ -269,8 +278,7 @@ async function loadNumpy(): Promise<void> {
     if (startedBy === "developer") {
       await loadOrThrow(pyodide, [developerNumpy]);
     } else {
-      // After a restore the packages' files are missing from the file system: bring them too.
-      await loadOrThrow(pyodide, startedBy === "snapshot" ? ["beadwright", "numpy"] : ["numpy"]);
+      await loadLate(["numpy"]);
     }
     pyodide.runPython("import numpy");
     numpyState = "done";
@@ -283,7 +291,7 @@ async function loadNumpy(): Promise<void> {
 
 self.onmessage = (event: MessageEvent<ToWorker>) => {
   if (event.data.type === "start") void start(event.data);
-  else answer(event.data);
+  else void answer(event.data);
 };
 
 // In a developer build the console may look inside: self.pyodideForDevelopers().runPython("…").
