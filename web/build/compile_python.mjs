@@ -7,7 +7,8 @@ import { loadPyodide } from "pyodide";
 
 const here = dirname(fileURLToPath(import.meta.url));
 const jobs = JSON.parse(readFileSync(process.argv[2], "utf8"));
-const pyodide = await loadPyodide({ env: { PYTHONHASHSEED: "0", HOME: "/home/pyodide" } });
+// Without column positions bytecode is a fifth smaller; a traceback still names the line.
+const pyodide = await loadPyodide({ env: { PYTHONHASHSEED: "0", PYTHONNODEBUGRANGES: "1", HOME: "/home/pyodide" } });
 pyodide.runPython(readFileSync(join(here, "python", "compile_zip.py"), "utf8"));
 const repack = pyodide.globals.get("repack");
 
