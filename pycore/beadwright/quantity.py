@@ -218,6 +218,7 @@ _FRACTION = re.compile(r"^(\d+)\s*/\s*(\d+)$")
 # `10.8 × 10⁻⁶/K` and `10.8 1e-6/K` hold a second number that belongs to the unit.
 _POWER_OF_UNIT = re.compile(r"(?<=\d)\s*(?:[x·*]\s*|\s)(?:1e-0?6|10\^?-6|10⁻⁶)\s*/\s*", re.IGNORECASE)
 _PER_OF_UNIT = re.compile(r"(?<=\d)\s+1\s*/\s*(?=[a-z°])", re.IGNORECASE)
+_PLAIN = re.compile(r"^(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?$")
 _AMBIGUOUS_COMMA = re.compile(r"^[1-9]\d{0,2},\d{3}$")
 
 
@@ -332,6 +333,8 @@ def _number(body: str, typed: str) -> Fraction:
             f"“{_short(typed)}” can mean {body.replace(',', '')} or {body.replace(',', '.')}; write it without the comma.",
         )
     digits = body.replace(" ", "").replace(",", ".")
+    if not _PLAIN.match(digits):
+        raise InputError("not-a-number", f"“{_short(typed)}” is not a number.")
     _, _, exponent = digits.lower().partition("e")
     if exponent and abs(int(exponent)) > MAX_EXPONENT:
         raise InputError("too-long", f"“{_short(typed)}” is out of any range; write a plain number.")

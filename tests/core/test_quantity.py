@@ -105,3 +105,10 @@ def test_long_lengths_print_in_feet_and_inches(value_mm, text):
 
 def test_no_negative_zero_on_a_sheet():
     assert quantity.plain(-0.0001, 1) == "0"
+
+
+@pytest.mark.parametrize("typed", ["cheap", "one", "e", "1e", "e5", "1_000", "--3", "0x10", "1.2.3", "١٢x", "nan", "inf", ""])
+def test_a_plain_number_that_is_none_is_refused_and_never_raises_otherwise(typed):
+    """“cheap” once broke the reader: the e was taken for an exponent."""
+    with pytest.raises(InputError):
+        quantity.parse_number(typed)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from fractions import Fraction
+from functools import lru_cache
 from typing import Any
 
 from .. import quantity
@@ -29,6 +30,7 @@ _YIELD_PACK = {METRIC: "cartridge-300", INCH: "cartridge-10"}
 # ---- texts ------------------------------------------------------------------------------------
 
 
+@lru_cache(maxsize=16384)
 def volume_text(value_ml: float, system: str) -> str:
     """A volume for reading: litres or ml, US gallons or fluid ounces."""
     if system == INCH:
@@ -36,6 +38,7 @@ def volume_text(value_ml: float, system: str) -> str:
     return quantity.show(value_ml, "volume", "l", 1 if value_ml >= 1e5 else 2) if value_ml >= 1000.0 else quantity.show(value_ml, "volume", "ml", 0)
 
 
+@lru_cache(maxsize=16384)
 def run_text(length_m: float, system: str) -> str:
     """A length of run for reading: metres or decimal feet."""
     return quantity.show(length_m * 1000.0, "length", "ft" if system == INCH else "m", 1)
@@ -61,6 +64,7 @@ def _share(part: float, whole: float) -> float:
     return part / whole if whole else 0.0
 
 
+@lru_cache(maxsize=16384)
 def _length(value_mm: float | None, system: str) -> str:
     return "–" if value_mm is None else writing.length(round(value_mm, 2), system)
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Mapping
 from fractions import Fraction
+from functools import lru_cache
 from typing import Any
 
 from attrs import field, frozen
@@ -136,6 +137,7 @@ class TakeoffInput:
     reads: Reads = field(repr=False)
 
 
+@lru_cache(maxsize=16384)
 def fold(text: str | None) -> str:
     """A name as it is compared: without outer spaces and the difference of capitals."""
     return " ".join((text or "").split()).casefold()

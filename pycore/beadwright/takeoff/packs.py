@@ -13,6 +13,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from fractions import Fraction
+from functools import lru_cache
 from math import gcd, lcm
 
 from attrs import frozen
@@ -78,7 +79,7 @@ def best_mix(volume_ml: Fraction, items: Sequence[Item], max_nodes: int = MAX_NO
         that no mix can beat, `searched` when every other mix was ruled out, `limit` when the
         search was cut short; then `lower_bound` says how cheap a mix could at best be.
     """
-    offered = _canonical(items)
+    offered = _canonical(tuple(items))
     if not offered:
         return None
     if volume_ml <= 0:
@@ -102,7 +103,8 @@ def best_mix(volume_ml: Fraction, items: Sequence[Item], max_nodes: int = MAX_NO
     return Mix(counts, usable, cost, bound, search.nodes, proof)
 
 
-def _canonical(items: Sequence[Item]) -> list[Item]:
+@lru_cache(maxsize=256)
+def _canonical(items: tuple[Item, ...]) -> list[Item]:
     """Usable items without those that others replace at no more cost; the order given changes nothing."""
     usable = sorted((item for item in items if item.usable_ml > 0), key=lambda item: (item.cost / item.usable_ml, -item.usable_ml, item.key))
     kept: list[Item] = []
