@@ -23,13 +23,18 @@ from .field.face import at_the_face
 from .fields import GROUPS, Choice, Field, Reads
 from .job import blank, blank_row, compare, merge, open_bytes, to_bytes
 from .quantity import INCH, METRIC, sign_of
-from .sheet import calendar, cure_print, cure_sheet, joint_sheet, printed, schedule
+from .sheet import calendar, cure_print, cure_sheet, joint_sheet, printed, schedule, takeoff_files, takeoff_sheet
 from .sheet.face_sheet import FACE_WORDS
-from .working import Issue
+from .sheet.takeoff_compare import compare_dict
+from .takeoff.alternative import changed
+from .takeoff.inputs import JointSection, joint_section
+from .takeoff.paste import read_pasted
+from .takeoff.total import Takeoff, total
+from .working import InputError, Issue
 
-__all__ = ["blank", "blank_row", "compare", "evaluate", "export", "forms", "frames", "merge", "open_file"]
+__all__ = ["blank", "blank_row", "compare", "compare_takeoff", "evaluate", "export", "forms", "frames", "merge", "open_file", "paste_runs"]
 
-EXPORT_KINDS = ("job", "sheet", "text", "schedule", "calendar", "cure-sheet")
+EXPORT_KINDS = ("job", "sheet", "text", "schedule", "takeoff-csv", "takeoff-xlsx", "calendar", "cure-sheet")
 _NOT_SHARED = ("joints", "takeoff", "cure", "surveys")
 
 
@@ -46,7 +51,8 @@ def forms() -> dict[str, Any]:
     Returns
     -------
     dict
-        `core`, `groups` (each with `key`, `label`, `path`, `fields`) and `words` for verdicts.
+        `core`, `groups` (each with `key`, `label`, `path`, `fields`), `words` for verdicts, and `starters`
+        (rows of packages and rates to begin with, all to edit).
     """
     return {
         "core": _core(),
@@ -57,6 +63,7 @@ def forms() -> dict[str, Any]:
             "kinds": dict(joint_sheet.KIND_WORDS),
             "boundary": printed.BOUNDARY,
         },
+        "starters": takeoff_sheet.starters(),
     }
 
 
@@ -148,15 +155,23 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
     wanted = None if only is None else set(only)
     answers: dict[str, Any] = {}
     by_joint: dict[str, tuple[catalogue.Caution, ...]] = {}
+    sections: dict[str, JointSection] = {}
     issues, readings = list(project.reads.issues), dict(project.reads.readings)
     for joint_id, path, row in joint_rows(job, rows):
         full = wanted is None or joint_id in wanted
         one = _answer(shared, joint_id, path, _text(row), full=full)
         answers[joint_id] = one.answer
         by_joint[joint_id] = one.cautions
+        sections[joint_id] = one.section
         issues += one.issues
         if full:
             readings.update(one.readings)
+    takeoff: dict[str, Any] = {}
+    if (taken := _takeoff_of(job, shared, sections)) is not None:
+        full = wanted is None or "takeoff" in wanted
+        takeoff = taken.answer if full else takeoff_sheet.short_form(taken.answer)
+        issues += taken.takeoff.issues
+        readings.update(taken.takeoff.readings if full else {})
     cure = _cure(job, shared, wanted)
     issues += cure.issues
     readings.update(cure.readings)
@@ -165,7 +180,7 @@ def evaluate(job: object, only: Iterable[str] | None = None) -> dict[str, Any]:
         "issues": [issue.as_dict() for issue in [*rows.issues, *issues]],
         "readings": readings,
         "joints": answers,
-        "takeoff": {},
+        "takeoff": takeoff,
         "cure": cure.answer,
         "surveys": {},
         "cautions": _cautions(project, by_joint),
@@ -181,6 +196,7 @@ class _Answer:
     cautions: tuple[catalogue.Caution, ...]
     issues: tuple[Issue, ...]
     readings: dict[str, dict[str, object]]
+    section: JointSection
 
 
 def _text(value: object) -> str:
@@ -209,7 +225,70 @@ def _answer(shared: str, joint_id: str, path: str, row: str, *, full: bool) -> _
     found = tuple(cautions_of_joint(judged, project))
     face = at_the_face(judged, project)
     answer = joint_sheet.joint_dict(judged, face, project.system, [item.id for item in found], full=full)
-    return _Answer(answer, found, tuple(joint.reads.issues), joint.reads.readings)
+    return _Answer(answer, found, tuple(joint.reads.issues), joint.reads.readings, joint_section(judged, project))
+
+
+@frozen
+class _Taken:
+    """The take-off's part of the answer, and what it was written from."""
+
+    takeoff: Takeoff
+    answer: dict[str, Any]
+
+
+def _takeoff_of(job: object, shared: str, sections: Mapping[str, JointSection]) -> _Taken | None:
+    """The take-off of a job, or None while it is empty; an unchanged one is not worked out again."""
+    raw = job.get("takeoff") if isinstance(job, Mapping) else None
+    if not isinstance(raw, Mapping) or not raw:
+        return None
+    runs = raw.get("runs")
+    pointed = {row.get("joint") for row in runs if isinstance(row, Mapping) and isinstance(row.get("joint"), str)} if isinstance(runs, list) else set()
+    return _taken(shared, _text(raw), tuple(sections[name] for name in sections if name in pointed))
+
+
+@lru_cache(maxsize=4)
+def _taken(shared: str, raw: str, sections: tuple[JointSection, ...]) -> _Taken:
+    project = _project(shared)
+    found = total(json.loads(raw), project, {item.id: item for item in sections})
+    return _Taken(found, takeoff_sheet.takeoff_dict(found, project.system))
+
+
+def _sections(job: object) -> dict[str, JointSection]:
+    """Sections of all joints, from answers that are kept."""
+    shared = _shared_text(job)
+    return {name: _answer(shared, name, path, _text(row), full=False).section for name, path, row in joint_rows(job, Reads(_project(shared).system))}
+
+
+def paste_runs(text: str, units: str, job: dict[str, Any] | None = None, columns: list[str | None] | None = None) -> dict[str, Any]:
+    """Runs from text pasted out of a spreadsheet, with how each column was understood; see `takeoff.paste.read_pasted`."""
+    return read_pasted(text, units, job, columns)
+
+
+def compare_takeoff(job: dict[str, Any], change: dict[str, Any] | None = None, other: dict[str, Any] | None = None) -> dict[str, Any]:
+    """The take-off as it is beside a changed one, or beside that of another job.
+
+    Parameters
+    ----------
+    job : dict
+        A decoded job file.
+    change : dict, optional
+        What to change; see `takeoff.alternative.changed`.
+    other : dict, optional
+        Another job to compare with instead.
+
+    Returns
+    -------
+    dict
+        `rows`, `table`, `left_out` (how many runs each leaves out); `error` when it cannot be done.
+    """
+    try:
+        second = other if other is not None else changed(job, change or {})
+    except InputError as error:
+        return {"rows": [], "table": None, "left_out": [0, 0], "error": error.message}
+    found = [_takeoff_of(one, _shared_text(one), _sections(one)) for one in (job, second)]
+    if found[0] is None or found[1] is None:
+        return {"rows": [], "table": None, "left_out": [0, 0], "error": "There is no take-off to compare yet."}
+    return compare_dict(found[0].takeoff, found[1].takeoff, _project(_shared_text(job)).system)
 
 
 def _cure(job: object, shared: str, wanted: set[str] | None) -> cure_sheet.CurePart:
@@ -294,8 +373,8 @@ def export(job: dict[str, Any], kind: str) -> tuple[str, str, bytes]:
     job : dict
         A decoded job file.
     kind : str
-        `job` (JSON), `sheet` (printable HTML), `text`, `schedule` (CSV), `calendar` (RFC 5545) or
-        `cure-sheet` (printable HTML).
+        `job` (JSON), `sheet` (printable HTML), `text`, `schedule` (CSV), `takeoff-csv`, `takeoff-xlsx`,
+        `calendar` (RFC 5545) or `cure-sheet` (printable HTML).
 
     Returns
     -------
@@ -312,6 +391,8 @@ def export(job: dict[str, Any], kind: str) -> tuple[str, str, bytes]:
         return f"{stem}.beadwright.json", "application/json", to_bytes(job)
     if kind not in EXPORT_KINDS:
         raise ValueError(f"kind must be one of {', '.join(EXPORT_KINDS)}; got {kind!r}")
+    if kind.startswith("takeoff-"):
+        return _takeoff_file(job, kind, stem)
     if kind == "calendar":
         cure = _cure(job, _shared_text(job), None)
         return f"{stem}.ics", "text/calendar", calendar.calendar_bytes(cure.events, cure.clock, str(job.get("title") or "Cure"))
@@ -323,6 +404,16 @@ def export(job: dict[str, Any], kind: str) -> tuple[str, str, bytes]:
     if kind == "text":
         return f"{stem}.txt", "text/plain", (printed.sheet_text(job, answer) + cure_print.cure_text(answer)).encode("utf-8")
     return f"{stem}-schedule.csv", "text/csv", schedule.schedule_csv(answer["joints"].values())
+
+
+def _takeoff_file(job: dict[str, Any], kind: str, stem: str) -> tuple[str, str, bytes]:
+    """The take-off as a file; an empty one gives a file with headers only."""
+    shared = _shared_text(job)
+    taken = _takeoff_of(job, shared, _sections(job)) or _taken(shared, "{}", ())
+    if kind == "takeoff-csv":
+        return f"{stem}-take-off.csv", "text/csv", takeoff_files.takeoff_csv(taken.takeoff)
+    title = job.get("title")
+    return f"{stem}-take-off.xlsx", "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet", takeoff_files.takeoff_xlsx(taken.takeoff, title if isinstance(title, str) else "")
 
 
 def _stem(job: Mapping[str, Any]) -> str:
