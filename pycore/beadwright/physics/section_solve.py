@@ -409,7 +409,12 @@ def _solved(shape: tuple[Any, ...], faces: frozenset[str]) -> Solved:
     before, after = second.reach_mm2 - first.reach_mm2, third.reach_mm2 - second.reach_mm2
     ratio = after / before if before else 0.0
     rest = after * ratio / (1.0 - ratio) if _LEAST_RATIO <= ratio <= _MOST_RATIO else after / 3.0
-    return third._replace(reach_mm2=third.reach_mm2 + rest)
+    return third._replace(reach_mm2=_steady(third.reach_mm2 + rest), area_mm2=_steady(third.area_mm2))
+
+
+def _steady(value: float) -> float:
+    """Eight digits, far finer than the grid: the last binary ones differ with the machine's arithmetic, and an answer must not."""
+    return float(f"{value:.8g}")
 
 
 def _solved_on(shape: tuple[Any, ...], faces: frozenset[str], lines: int, nodes: int) -> Solved:
@@ -457,7 +462,8 @@ def _pictured(shape: tuple[Any, ...], faces: frozenset[str]) -> Picture:
     shares = [min(1.0, max(0.0, 1.0 - float(item))) for item in uncured]
     # the picture's grid is coarse; its scale is that of the finer answer
     scale = _solved(shape, faces).reach_mm2 / top
-    return Picture(x.tolist(), y.tolist(), (scale * arrival).tolist(), [scale * float(item) for item in levels] + [scale * top], [*shares, 1.0])
+    reach = [[_steady(scale * value) for value in line] for line in arrival.tolist()]
+    return Picture(x.tolist(), y.tolist(), reach, [_steady(scale * float(item)) for item in (*levels, top)], [*map(_steady, shares), 1.0])
 
 
 def _arrival(np: Any, field: Any, psi: Any, levels: Any, top: float, held: Any) -> Any:
