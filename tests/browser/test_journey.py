@@ -435,6 +435,33 @@ def test_bin_backup_and_restore(tablet, site, tmp_path):
     row.get_by_role("link").click()
     expect(page.locator(".joints .row-name").first).to_have_text("Precast panel to panel")
 
+    # A job that has gone on since is never put over unasked.
+    page.locator('[data-more="job block"]').click()
+    shell.type_in(page, "/title", "Gone on since")
+    shell.saved(page)
+    page.goto(site.url + "#/")
+    page.get_by_test_id("restore").set_input_files(backup)
+    expect(page.get_by_test_id("banner-clash")).to_contain_text("on this tablet too")
+    page.get_by_test_id("clash-keep").click()
+    expect(row).to_contain_text("Gone on since")
+    page.get_by_test_id("restore").set_input_files(backup)
+    page.get_by_test_id("clash-both").click()
+    expect(page.locator("[data-testid^=job-row-]")).to_have_count(2)
+
+
+def test_a_file_can_be_dropped_on_the_list(tablet, site):
+    page = shell.home(tablet, site.url)
+    page.evaluate(
+        """() => {
+             const data = new DataTransfer();
+             data.items.add(new File(['{"format":"beadwright-job","version":1,"id":"d","title":"Dropped","units":"inch","joints":[]}'], 'dropped.beadwright.json', {type: 'application/json'}));
+             document.querySelector('main .page').dispatchEvent(new DragEvent('drop', {dataTransfer: data, bubbles: true, cancelable: true}));
+           }"""
+    )
+    expect(page.get_by_role("heading", name="Dropped")).to_be_visible(timeout=shell.WORKING_LIMIT_MS)
+    page.get_by_test_id("import-new").click()
+    expect(page.locator("main[data-page=wall] h1")).to_have_text("Dropped")
+
 
 def test_an_earlier_copy_is_brought_back_as_a_new_step(tablet, site):
     page = shell.demo(tablet, site.url)
@@ -446,3 +473,31 @@ def test_an_earlier_copy_is_brought_back_as_a_new_step(tablet, site):
     expect(page.get_by_role("heading", level=1)).to_have_text("Harbour Hall (invented example)")
     page.get_by_test_id("undo").click()
     expect(page.get_by_role("heading", level=1)).to_have_text("Second title")
+
+
+def test_photos_stay_with_their_joint_and_come_back_by_undo(tablet, site, tmp_path):
+    page = shell.demo(tablet, site.url)
+    page.locator(".joints .row-link").first.click()
+    picture = page.evaluate(
+        """async () => {
+             const canvas = new OffscreenCanvas(2400, 1600);
+             const pen = canvas.getContext('2d');
+             pen.fillRect(0, 0, 1200, 1600);
+             const blob = await canvas.convertToBlob({type: 'image/png'});
+             return [...new Uint8Array(await blob.arrayBuffer())];
+           }"""
+    )
+    path = tmp_path / "bead.png"
+    path.write_bytes(bytes(picture))
+    page.get_by_test_id("add-photo").set_input_files(path)
+    photo = page.get_by_test_id("photo")
+    expect(photo.locator("img")).to_be_visible()
+    size = photo.locator("img").evaluate("img => [img.naturalWidth, img.naturalHeight]")
+    assert size[0] <= 1600 and abs(size[0] / size[1] - 1.5) < 0.01
+    shell.saved(page)
+    page.reload()
+    expect(photo.locator("img")).to_be_visible()
+    photo.get_by_role("button", name="Take off photo 1").click()
+    expect(photo).to_have_count(0)
+    page.get_by_test_id("undo").click()
+    expect(photo.locator("img")).to_be_visible()

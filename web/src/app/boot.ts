@@ -8,7 +8,7 @@ import { commitPending, stepHistory } from "./editing";
 import { exportRaw } from "./files";
 import { follow, openJob, refreshJobs } from "./jobs";
 import { jobOf, parseRoute } from "./routes";
-import { NO_HISTORY, type Demo, type State } from "./state";
+import { NO_HISTORY, NO_TAKEOFF, type Demo, type State } from "./state";
 import { applyTheme, storedTheme } from "./theme";
 import { askForAnswer } from "./working";
 
@@ -29,7 +29,8 @@ export function boot(root: HTMLElement, neighbours: Neighbours): App {
   });
   app.core.start();
   void loadForms(app);
-  void loadDemos(app).then(() => follow(app));
+  const demos = loadDemos(app);
+  void (app.state.route.page === "demo" ? demos.then(() => follow(app)) : follow(app));
   void app.store.facts().then((facts) => app.update({ facts }), () => undefined);
   return app;
 }
@@ -56,9 +57,12 @@ function firstState({ core, offline }: Neighbours): State {
     frames: null,
     frameIndex: null,
     incoming: null,
+    clash: null,
+    takeoff: NO_TAKEOFF,
     save: { kind: "idle", savedAt: null, text: "" },
     offline: offline.state,
     facts: null,
+    photos: {},
     chips: {},
     opened: new Set(),
     isArranging: false,
@@ -136,10 +140,11 @@ function listenToCore(app: App): void {
     const now = app.core.status;
     app.update({ core: now });
     if (now.phase === "ready" && was.phase !== "ready") {
-      void takeForms(app);
       askForAnswer(app);
+      void takeForms(app);
     }
   });
+  if (app.core.status.phase === "ready") void takeForms(app);
 }
 
 /** The forms as built, so that a job can be read and typed into before the core runs. */

@@ -21,7 +21,7 @@ export interface FieldSpec {
   default: string | Partial<Record<UnitSystem, string>> | null;
   required: boolean;
   choices: Choice[] | null;
-  choices_from: null | "sealants" | { field: string; key: string };
+  choices_from: null | "sealants" | "joints" | { field: string; key: string };
   section: string;
   show_when: null | Record<string, string[]>;
   help: string;
@@ -42,6 +42,8 @@ export interface Forms {
   core: { version: string; tables: string[] };
   groups: FieldGroup[];
   words: Record<string, unknown>;
+  /** Rows to begin with, by group and system; all of them to edit. */
+  starters?: Record<string, Partial<Record<UnitSystem, Row[]>>>;
 }
 
 export interface Issue {
@@ -68,7 +70,7 @@ export interface AnswerTable {
   key: string;
   title: string;
   columns: { label: string; align?: "left" | "right" }[];
-  rows: { cells: string[]; mark?: null | "chosen" | "bad" }[];
+  rows: { cells: string[]; mark?: null | "chosen" | "bad" | "total" }[];
   note?: string | null;
 }
 
@@ -132,8 +134,36 @@ export interface Evaluation {
   issues: Issue[];
   readings: Record<string, Reading>;
   joints: Record<string, JointAnswer>;
+  takeoff?: TakeoffAnswer | null;
   cautions: Caution[];
   facts: { label: string; value: string }[];
+}
+
+/** The take-off; an empty object while there is none, the totals alone where it is not asked for in full. */
+export interface TakeoffAnswer {
+  short?: boolean;
+  left_out_text?: string;
+  runs?: { path: string; text: string; left_out: string | null }[];
+  answers?: Answer[];
+  tables?: AnswerTable[];
+  drawing?: string | null;
+  notes?: { severity: string; text: string }[];
+}
+
+/** Rows read from a pasted text, with how each column was understood. */
+export interface Pasted {
+  rows: Row[];
+  columns: { index: number; header: string; field: string | null; label: string | null; samples: string[]; text: string }[];
+  separator: string;
+  decimal: string;
+  has_header: boolean;
+  issues: { severity: Severity; message: string }[];
+  text: string;
+}
+
+export interface Comparison {
+  table: AnswerTable | null;
+  error?: string;
 }
 
 export interface Frame {

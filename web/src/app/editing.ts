@@ -4,8 +4,9 @@ import type { Job } from "../store/types";
 import { App, messageOf } from "./app";
 import type { Row } from "./contract";
 import { withUnit } from "./fields";
+import { loadPhotos } from "./photos";
 import { get, getRows, set } from "./pointer";
-import { NO_HISTORY } from "./state";
+import { NO_HISTORY, NO_TAKEOFF } from "./state";
 import { askForAnswer } from "./working";
 
 /** While typing: the text stays exactly as it is typed. */
@@ -109,6 +110,8 @@ export async function stepHistory(app: App, direction: "undo" | "redo"): Promise
       spoken: `${direction === "undo" ? "Undone" : "Done again"}: ${step.label}`,
     });
     askForAnswer(app);
+    const route = app.state.route;
+    if (route.page === "joint") void loadPhotos(app, route.joint);
   } catch (error) {
     app.say(messageOf(error), "bad");
   }
@@ -136,5 +139,5 @@ function save(app: App, label: string): void {
 }
 
 export function forgetOpen(app: App): void {
-  app.update({ open: null, openFault: null, pending: null, history: NO_HISTORY, result: null, frames: null, frameIndex: null, isStale: false, chips: {} });
+  app.update({ open: null, openFault: null, pending: null, history: NO_HISTORY, result: null, frames: null, frameIndex: null, isStale: false, chips: {}, takeoff: NO_TAKEOFF });
 }

@@ -1,7 +1,7 @@
 // Reading the field declarations: which fields show, what they offer, which unit a bare number takes.
 
 import type { Choice, FieldGroup, FieldSpec, Forms, Row, UnitSystem } from "./contract";
-import { get, getRow, getRows } from "./pointer";
+import { get, getRow, getRows, rowNameOf } from "./pointer";
 
 export function groupOf(forms: Forms, key: string): FieldGroup {
   const found = forms.groups.find((group) => group.key === key);
@@ -68,20 +68,24 @@ function outerBase(forms: Forms, outer: string, base: string): string {
   return base.split("/").slice(0, 1 + depth + (isList ? 1 : 0)).join("/");
 }
 
+/** Lists of the job that a reference may point into. */
+const LISTS: Readonly<Record<string, { path: string; word: string }>> = {
+  sealants: { path: "/sealants", word: "Sealant" },
+  joints: { path: "/joints", word: "Joint" },
+};
+
 /** The choices of a field here and now. */
 export function choicesOf(spec: FieldSpec, forms: Forms, group: FieldGroup, job: Row, base: string): Choice[] {
-  if (spec.choices_from === "sealants") {
-    return getRows(job, "/sealants").map((row, index) => ({
-      value: String(row["id"] ?? ""),
-      label: String(row["name"] ?? "").trim() || `Sealant ${index + 1}`,
-    }));
+  const list = typeof spec.choices_from === "string" ? LISTS[spec.choices_from] : undefined;
+  if (list !== undefined) {
+    return getRows(job, list.path).map((row, index) => ({ value: String(row["id"] ?? ""), label: rowNameOf(row, list.word, index) }));
   }
-  if (spec.choices_from) {
+  if (spec.choices_from && typeof spec.choices_from !== "string") {
     const { field, key } = spec.choices_from;
     const owner = group.fields.find((item) => item.key === field);
     const chosen = effective(forms, group, getRow(job, base), field, systemOf(job));
-    const list = owner?.choices?.find((choice) => choice.value === chosen)?.[key];
-    return Array.isArray(list) ? (list as Choice[]) : [];
+    const offered = owner?.choices?.find((choice) => choice.value === chosen)?.[key];
+    return Array.isArray(offered) ? (offered as Choice[]) : [];
   }
   return spec.choices ?? [];
 }

@@ -6,7 +6,7 @@ import type { Change, Conflict, ExportFile, Row } from "./contract";
 import { commitPending, newId } from "./editing";
 import { go, keepNew, readFile, refreshJobs, refreshKept, showLoose } from "./jobs";
 
-export type ExportKind = "job" | "sheet" | "text" | "schedule";
+export type ExportKind = "job" | "sheet" | "text" | "schedule" | "takeoff-csv" | "takeoff-xlsx";
 
 /** Larger files are not read at all; the core has the finer limits. */
 const MOST_FILE_BYTES = 64 * 1024 ** 2;
@@ -132,9 +132,19 @@ export async function backUpAll(app: App, way: "save" | "share"): Promise<void> 
   }
 }
 
-export async function restoreBackup(app: App, file: File, choose: (clash: Clash) => ClashChoice): Promise<void> {
+/** Jobs that are here already are asked about one by one; nothing is put over them unasked. */
+export async function restoreBackup(app: App, file: File): Promise<void> {
+  const ask = (clash: Clash): Promise<ClashChoice> =>
+    new Promise((resolve) => {
+      const choose = (choice: ClashChoice): void => {
+        app.update({ clash: null });
+        resolve(choice);
+      };
+      app.update({ clash: { clash, choose } });
+      scrollTo(0, 0);
+    });
   try {
-    const result = await app.store.restore(file, choose);
+    const result = await app.store.restore(file, ask);
     const trouble = result.issues.length > 0 ? ` ${result.issues.join(" ")}` : "";
     app.say(`Restored ${count(result.restored, "job")} from “${file.name}”.${trouble}`, result.issues.length > 0 ? "bad" : "plain");
   } catch (error) {

@@ -4,6 +4,8 @@ import type { Job, OpenResult } from "../store/types";
 import { App, messageOf } from "./app";
 import type { Opened, Row, UnitSystem } from "./contract";
 import { commitPending, forgetOpen, newId } from "./editing";
+import { loadPhotos } from "./photos";
+import { getRows } from "./pointer";
 import { href, jobOf, parseRoute, type Route } from "./routes";
 import { askForAnswer } from "./working";
 
@@ -26,6 +28,13 @@ export async function follow(app: App): Promise<void> {
   if (wanted !== null && app.state.open?.id !== wanted) await openJob(app, wanted);
   if (route.page === "history") await refreshRevisions(app, route.job);
   if (wanted !== null) askForAnswer(app);
+  if (app.state.open !== null) showPhotos(app, route);
+}
+
+function showPhotos(app: App, route: Route): void {
+  if (route.page !== "joint" && route.page !== "sheet") return;
+  const wanted = route.joint !== null ? [route.joint] : getRows(app.job, "/joints").map((joint) => String(joint["id"]));
+  for (const id of wanted) void loadPhotos(app, id);
 }
 
 export async function openJob(app: App, id: string): Promise<void> {

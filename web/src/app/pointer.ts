@@ -58,6 +58,6 @@ function setParts(here: unknown, parts: string[], value: unknown): unknown {
 
 /** What the page calls a row: its own name, or the kind of thing with its number. */
 export function rowNameOf(row: Record<string, unknown>, word: string, index: number): string {
-  const own = row["name"] ?? row["label"];
+  const own = row["name"] ?? row["label"] ?? row["stage"];
   return (typeof own === "string" && own.trim()) || `${word} ${index + 1}`;
 }

@@ -10,6 +10,7 @@ export type Route =
   | { page: "joint"; job: string; joint: string }
   | { page: "face"; job: string; joint: string }
   | { page: "sheet"; job: string; joint: string | null }
+  | { page: "takeoff"; job: string }
   | { page: "history"; job: string };
 
 export function parseRoute(hash: string): Route {
@@ -20,6 +21,7 @@ export function parseRoute(hash: string): Route {
   if (head !== "job" || id === undefined) return { page: "jobs" };
   if (part === "joint" && sub !== undefined) return { page: last === "face" ? "face" : "joint", job: id, joint: sub };
   if (part === "sheet") return { page: "sheet", job: id, joint: sub ?? null };
+  if (part === "takeoff") return { page: "takeoff", job: id };
   if (part === "history") return { page: "history", job: id };
   return { page: "wall", job: id };
 }
@@ -42,6 +44,8 @@ export function href(route: Route): string {
       return `#/job/${code(route.job)}/joint/${code(route.joint)}/face`;
     case "sheet":
       return `#/job/${code(route.job)}/sheet${route.joint === null ? "" : "/" + code(route.joint)}`;
+    case "takeoff":
+      return `#/job/${code(route.job)}/takeoff`;
     case "history":
       return `#/job/${code(route.job)}/history`;
   }

@@ -1,8 +1,9 @@
 // The one state object. Pages are drawn from it; actions make a new one.
 
 import type { CoreStatus } from "../core/client";
-import type { HistoryState, JobSummary, QuarantineInfo, RevisionInfo, SaveState, StoreFacts } from "../store/types";
-import type { Change, Conflict, Evaluation, Forms, Frames, Issue, Row } from "./contract";
+import type { Clash, ClashChoice, HistoryState, JobSummary, QuarantineInfo, RevisionInfo, SaveState, StoreFacts } from "../store/types";
+import type { Change, Comparison, Conflict, Evaluation, Forms, Frames, Issue, Pasted, Row } from "./contract";
+import type { Shown } from "./photos";
 import type { OfflineState } from "./ports";
 import type { Route } from "./routes";
 
@@ -52,6 +53,20 @@ export interface Incoming {
   merged: { job: Row; conflicts: Conflict[]; choices: Record<string, "mine" | "theirs"> } | null;
 }
 
+/** What the take-off page holds beside the job: the cell touched last, a paste, a comparison. */
+export interface TakeoffDesk {
+  /** List and row of the cell touched last, and its field: what 'fill down' and 'duplicate' work on. */
+  cell: { list: string; index: number; key: string } | null;
+  /** How many rows of each list are on the page. */
+  shown: Readonly<Record<string, number>>;
+  paste: { text: string; columns: (string | null)[] | null; read: Pasted | null } | null;
+  /** What to change for the comparison, as entered, and its answer with the version that it answers. */
+  change: Readonly<Record<string, string>>;
+  compared: { version: number; data: Comparison } | null;
+}
+
+export const NO_TAKEOFF: TakeoffDesk = { cell: null, shown: {}, paste: null, change: {}, compared: null };
+
 export interface Notice {
   text: string;
   tone: "plain" | "bad";
@@ -89,9 +104,14 @@ export interface State {
   /** Frame shown by the scrubber; null means where the core starts it. */
   frameIndex: number | null;
   incoming: Incoming | null;
+  /** A job that stands both in a backup and on this tablet, and waits for a choice. */
+  clash: { clash: Clash; choose: (choice: ClashChoice) => void } | null;
+  takeoff: TakeoffDesk;
   save: SaveState;
   offline: OfflineState;
   facts: StoreFacts | null;
+  /** Pictures on the page, by photo id. */
+  photos: Readonly<Record<string, Shown>>;
   /** Unit chips that people chose, by pointer. */
   chips: Readonly<Record<string, string>>;
   /** Disclosures that are open, by name. */

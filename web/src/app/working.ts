@@ -55,12 +55,17 @@ function wantedInFull(app: App): string[] {
   const route = app.state.route;
   if (route.page === "joint" || route.page === "face") return [route.joint];
   if (route.page === "sheet") return route.joint !== null ? [route.joint] : getRows(app.job, "/joints").map((row) => String(row["id"]));
+  if (route.page === "takeoff") return ["takeoff"];
   return [];
 }
 
 /** What to say aloud when the verdict of the joint on screen has changed. */
 function newsOf(app: App, next: Evaluation): string | null {
   const route = app.state.route;
+  if (route.page === "takeoff") {
+    const text = next.takeoff?.left_out_text;
+    return text !== undefined && text !== (app.state.result?.evaluation.takeoff?.left_out_text ?? "") ? text || "Nothing is left out." : null;
+  }
   if (route.page !== "joint" && route.page !== "face") return null;
   const joint = next.joints[route.joint];
   const before = app.state.result?.evaluation.joints[route.joint];

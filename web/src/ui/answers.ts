@@ -49,7 +49,8 @@ export function bands(answers: Answer[]): TemplateResult {
   </div>`;
 }
 
-const ROW_WORDS = { chosen: "in force", bad: "not enough" } as const;
+/** What the weight of a row says; the row of totals says it in its own first cell. */
+const ROW_WORDS: Record<string, string> = { chosen: "in force", bad: "not enough", total: "" };
 /** Longer cells may break; a figure with its unit may not. */
 const WHOLE_LETTERS = 12;
 
@@ -72,11 +73,12 @@ export function table(data: AnswerTable, withTitle = true): TemplateResult {
   </div>`;
 }
 
-function cellOf(cell: string, at: number, align: string | undefined, rowMark: "chosen" | "bad" | null | undefined): TemplateResult {
+function cellOf(cell: string, at: number, align: string | undefined, rowMark: string | null | undefined): TemplateResult {
   const look = `${align === "right" ? "right" : ""} ${cell.length <= WHOLE_LETTERS ? "whole" : ""}`;
   if (at > 0) return html`<td class=${look}>${cell}</td>`;
   // The weight of the row says it to the eye; to others a word does.
-  return html`<th scope="row" class=${look}>${cell}${rowMark ? html`<span class="hidden-word">, ${ROW_WORDS[rowMark] ?? rowMark}</span>` : nothing}</th>`;
+  const word = rowMark ? (ROW_WORDS[rowMark] ?? rowMark) : "";
+  return html`<th scope="row" class=${look}>${cell}${word ? html`<span class="hidden-word">, ${word}</span>` : nothing}</th>`;
 }
 
 /** Tables that stand ready behind their titles, and are printed whole. */

@@ -23,23 +23,8 @@ export function field(app: App, forms: Forms, group: FieldGroup, spec: FieldSpec
   const reading = readingAt(app, pointer);
   const text = valueAt(app.job, pointer);
   const help = helpText(spec, app, text);
-  const units = unitsOf(spec, systemOf(app.job));
-  const place: Place = {
-    spec,
-    pointer,
-    id,
-    text,
-    raw: get(app.job, pointer),
-    units,
-    unit: hasUnit(text) ? unitIn(text, units) : chipOf(app, pointer, units),
-    choices: choicesOf(spec, forms, group, app.job, base),
-    example: forSystem(spec.example, systemOf(app.job)) ?? "",
-    fallback: forSystem(spec.default, systemOf(app.job)),
-    isReadOnly: app.open.readOnly !== null,
-    isBad: issues.some((issue) => issue.severity === "error"),
-    isGlove,
-    describedBy: [help && `${id}-help`, reading && `${id}-reads`, ...issues.map((_, at) => `${id}-message-${at}`)].filter(Boolean).join(" "),
-  };
+  const describedBy = [help && `${id}-help`, reading && `${id}-reads`, ...issues.map((_, at) => `${id}-message-${at}`)].filter(Boolean).join(" ");
+  const place = { ...placeOf(app, forms, group, spec, base), id, isGlove, describedBy };
   const label = html`${spec.label}${spec.symbol ? html` <i class="symbol">${lettered(spec.symbol)}</i>` : nothing}${spec.required && text === ""
     ? html` <span class="needed">needed</span>`
     : nothing}`;
@@ -58,9 +43,32 @@ export function field(app: App, forms: Forms, group: FieldGroup, spec: FieldSpec
   `;
 }
 
-function message(id: string, issue: Issue): TemplateResult {
+/** All that a widget needs to know of a field, but for its neighbours on the page. */
+export function placeOf(app: App, forms: Forms, group: FieldGroup, spec: FieldSpec, base: string): Place {
+  const pointer = join(base, spec.key);
+  const text = valueAt(app.job, pointer);
+  const units = unitsOf(spec, systemOf(app.job));
+  return {
+    spec,
+    pointer,
+    id: fieldId(pointer),
+    text,
+    raw: get(app.job, pointer),
+    units,
+    unit: hasUnit(text) ? unitIn(text, units) : chipOf(app, pointer, units),
+    choices: choicesOf(spec, forms, group, app.job, base),
+    example: forSystem(spec.example, systemOf(app.job)) ?? "",
+    fallback: forSystem(spec.default, systemOf(app.job)),
+    isReadOnly: app.open.readOnly !== null,
+    isBad: issuesAt(app, pointer).some((issue) => issue.severity === "error"),
+    isGlove: false,
+    describedBy: "",
+  };
+}
+
+export function message(id: string, issue: Issue, where = ""): TemplateResult {
   return html`<p class="message is-${issue.severity}" id=${id} data-testid="message" data-code=${issue.code}>
-    <b>${SEVERITY_WORDS[issue.severity]}:</b> ${issue.message}
+    <b>${SEVERITY_WORDS[issue.severity]}${where && ` ${where}`}:</b> ${issue.message}
   </p>`;
 }
 
@@ -71,7 +79,7 @@ export function severityWord(severity: Issue["severity"]): string {
 const byPath = new WeakMap<Evaluation, Map<string, Issue[]>>();
 
 /** The issues of one place; sorted once for each answer, since every field asks. */
-function issuesAt(app: App, pointer: string): Issue[] {
+export function issuesAt(app: App, pointer: string): Issue[] {
   const evaluation = app.state.result?.evaluation;
   if (evaluation === undefined) return [];
   let sorted = byPath.get(evaluation);

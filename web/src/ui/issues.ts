@@ -9,6 +9,7 @@ import { go } from "../app/jobs";
 import { fieldId, severityWord } from "./field";
 import { focusSoon } from "./focus";
 import { openParts } from "./form";
+import { rowParts, SETTINGS_BLOCK, showRow } from "./rows";
 
 const MOST_SHOWN = 6;
 
@@ -37,7 +38,11 @@ export function issueList(app: App, wanted: (issue: Issue) => boolean): Template
 
 /** On the wall page a joint's fault needs the joint's name. */
 function placeWords(app: App, issue: Issue): string {
-  const [list, index] = split(issue.path);
+  const [list, index, at] = split(issue.path);
+  if (list === "takeoff" && index !== undefined && at !== undefined) {
+    const row = getRows(app.job, `/${list}/${index}`)[Number(at)];
+    return row === undefined ? "" : ` (${rowNameOf(row, "Row", Number(at))})`;
+  }
   if (app.state.route.page !== "wall" || index === undefined || (list !== "joints" && list !== "sealants")) return "";
   const row = getRows(app.job, `/${list}`)[Number(index)];
   return row === undefined ? "" : ` (${rowNameOf(row, list === "joints" ? "Joint" : "Sealant", Number(index))})`;
@@ -53,6 +58,9 @@ export function jump(app: App, issue: Issue, event: Event): void {
     const page = part === "face" ? "face" : "joint";
     const route = app.state.route;
     if (!(route.page === page && "joint" in route && route.joint === id) && id !== "") go({ page, job, joint: id });
+  } else if (list === "takeoff") {
+    showRow(app, issue.path);
+    if (app.state.route.page !== "takeoff") go({ page: "takeoff", job });
   } else if (app.state.route.page !== "wall") go({ page: "wall", job });
   openParts(app, partsAround(app, issue.path));
   focusSoon(fieldId(issue.path));
@@ -67,5 +75,6 @@ function partsAround(app: App, path: string): string[] {
     .map((section) => `more ${base} ${section.title}`);
   const [list, index] = split(path);
   if (list === "sealants") return [...titles, `sealant ${index}`];
+  if (list === "takeoff") return [...titles, SETTINGS_BLOCK, ...rowParts(app, path)];
   return list !== "joints" && list !== "site" ? [...titles, "job block"] : titles;
 }

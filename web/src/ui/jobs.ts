@@ -29,7 +29,7 @@ export function jobsPage(app: App): TemplateResult {
       <div class="actions">
         <button type="button" data-testid="backup" @click=${() => void backUpAll(app, "save")}>Back up to a file</button>
         ${canShareFiles() ? html`<button type="button" @click=${() => void backUpAll(app, "share")}>Share a backup</button>` : nothing}
-        ${filePicker("restore", "Restore a backup", ".json,application/json", (file) => void restoreBackup(app, file, () => "both"))}
+        ${filePicker("restore", "Restore a backup", ".json,application/json", (file) => void restoreBackup(app, file))}
         <a class="button" href=${href({ page: "kept" })}>Bin and storage</a>
         <a class="button" href=${href({ page: "help" })}>How to type, and cautions</a>
       </div>

@@ -15,6 +15,7 @@ import { fieldId } from "./field";
 import { focusSoon, jumpTo } from "./focus";
 import { form } from "./form";
 import { issueList } from "./issues";
+import { photosPart } from "./photos";
 import { titleStrip } from "./title_block";
 
 export function jointPage(app: App, forms: Forms, id: string): TemplateResult {
@@ -29,6 +30,7 @@ export function jointPage(app: App, forms: Forms, id: string): TemplateResult {
       ${titleStrip(app)} ${jointHead(app, row, index, rows.length, answer)}
       ${issueList(app, (issue) => issue.path.startsWith(`${base}/`) && !issue.path.startsWith(`${base}/face`))}
       ${section(app, id, answer)} ${answer === null ? nothing : answersOf(app, answer, id)}
+      ${photosPart(app, row, index)}
       ${app.state.coreFault !== null && answer !== null ? waiting(app) : nothing}
     </div>
     ${inputs(app, forms, base, row)}

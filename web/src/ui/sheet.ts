@@ -5,11 +5,13 @@ import type { App } from "../app/app";
 import type { FieldGroup, Forms, JointAnswer, Row } from "../app/contract";
 import { choicesOf, groupOf, shows, systemOf, tellingReading, unitsOf } from "../app/fields";
 import { canShareFiles, exportFile, type ExportKind } from "../app/files";
+import { photoIds } from "../app/photos";
 import { getRow, getRows, join, rowNameOf } from "../app/pointer";
 import { href } from "../app/routes";
 import { bands, cautions, notes, smallVerdict, table, verdict, verdictOf, waiting, working } from "./answers";
 import { drawingOf } from "./drawing";
 import { lettered } from "./letters";
+import { photos } from "./photos";
 import { titleBlock, titleStrip } from "./title_block";
 
 const EXPORTS: readonly { kind: ExportKind; word: string }[] = [
@@ -126,6 +128,7 @@ function jointSheet(app: App, forms: Forms, row: Row, index: number, answer: Joi
     </div>
     ${answer === undefined ? nothing : bands(answer.answers ?? [])} ${notes(answer?.notes ?? [])} ${(answer?.tables ?? []).map((item) => table(item))}
     ${answer?.steps && answer.steps.length > 0 ? html`<h3>Working</h3>${working(answer.steps)}` : nothing}
+    ${photoIds(row).length > 0 ? html`<h3>Photos</h3>${photos(app, row, null)}` : nothing}
     ${answer?.face ? html`<h3>${groupOf(forms, "face").label}</h3>${values(app, forms, groupOf(forms, "face"), `${base}/face`)}${verdict({ verdict: answer.face.verdict, word: answer.face.verdict_word, text: answer.face.verdict_text }, false)}${bands(answer.face.answers)}` : nothing}
   </section>`;
 }

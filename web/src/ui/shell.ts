@@ -18,6 +18,7 @@ import { jobsPage } from "./jobs";
 import { jointPage } from "./joint";
 import { keptPage } from "./kept";
 import { sheetPage } from "./sheet";
+import { takeoffPage } from "./takeoff";
 import { wallPage } from "./wall";
 
 export function shell(app: App): TemplateResult {
@@ -49,6 +50,7 @@ function head(app: App): TemplateResult {
         : nothing}
     </nav>
     <div class="tools">
+      ${job !== null ? html`<a class="not-narrow" href=${href({ page: "takeoff", job })} aria-current=${route.page === "takeoff" ? "page" : nothing}>Take-off</a>` : nothing}
       ${job !== null ? html`<a href=${href({ page: "sheet", job, joint: null })} aria-current=${route.page === "sheet" ? "page" : nothing}>Sheet</a>` : nothing}
       ${job !== null && open !== null && open.readOnly === null ? undoButtons(app) : nothing}
     </div>
@@ -70,11 +72,20 @@ function undoButtons(app: App): TemplateResult {
 }
 
 function banners(app: App): TemplateResult {
-  const { open, notice, offline, route } = app.state;
+  const { open, notice, offline, route, clash } = app.state;
   const isOfJob = open !== null && jobOf(route) === open.id;
   return html`
     ${offline.updateWaiting
       ? banner("update", html`A newer version of the app is on this tablet.`, html`<button type="button" @click=${() => void app.offline.takeUpdate().catch((error: unknown) => app.say(`Not changed, since what is on screen could not be saved: ${messageOf(error)}`, "bad"))}>Save and change to it</button>`)
+      : nothing}
+    ${clash !== null
+      ? banner(
+          "clash",
+          html`<b>${clash.clash.title || "Untitled job"}</b> is on this tablet too, saved ${clockText(clash.clash.mine.savedAt)}. The backup has it as saved ${clockText(clash.clash.theirs.savedAt)}.`,
+          html`<button type="button" data-testid="clash-keep" @click=${() => clash.choose("keep")}>Keep this tablet's</button>
+            <button type="button" data-testid="clash-replace" @click=${() => clash.choose("replace")}>Take the backup's</button>
+            <button type="button" data-testid="clash-both" @click=${() => clash.choose("both")}>Keep both</button>`,
+        )
       : nothing}
     ${isOfJob && open.readOnly !== null
       ? banner(
@@ -143,6 +154,8 @@ function page(app: App): TemplateResult {
       return facePage(app, forms, route.joint);
     case "sheet":
       return sheetPage(app, forms, route.joint);
+    case "takeoff":
+      return takeoffPage(app, forms);
     case "history":
       return historyPage(app);
   }

@@ -25,6 +25,8 @@ export interface Place {
   isBad: boolean;
   isGlove: boolean;
   describedBy: string;
+  /** Said in place of a label, where none stands beside the control. */
+  name?: string;
 }
 
 export type Widget = (app: App, place: Place) => TemplateResult;
@@ -50,6 +52,12 @@ const WIDGETS: Readonly<Record<string, Widget>> = {
   pace: quantityWidget,
   coverage: quantityWidget,
 };
+
+/** The bare control of a place, for a cell of a list: the label is the column's, the unit may be typed. */
+export function cellWidget(app: App, place: Place): TemplateResult {
+  if (place.spec.kind === "choice" || place.spec.kind === "reference") return list(app, place);
+  return place.spec.kind === "flag" ? flagWidget(app, place) : input(app, place);
+}
 
 export function widgetFor(kind: string): Widget {
   const widget = Object.hasOwn(WIDGETS, kind) ? WIDGETS[kind] : undefined;
@@ -112,6 +120,7 @@ function input(app: App, place: Place): TemplateResult {
     spellcheck=${place.spec.kind === "text" ? "true" : "false"}
     .value=${live(place.text)}
     ?readonly=${place.isReadOnly}
+    aria-label=${place.name ?? nothing}
     aria-invalid=${place.isBad ? "true" : nothing}
     aria-required=${place.spec.required ? "true" : nothing}
     aria-describedby=${place.describedBy || nothing}
@@ -213,6 +222,7 @@ function list(app: App, place: Place): TemplateResult {
     id=${place.id}
     class="line"
     ?disabled=${place.isReadOnly}
+    aria-label=${place.name ?? nothing}
     aria-invalid=${place.isBad ? "true" : nothing}
     aria-required=${place.spec.required ? "true" : nothing}
     aria-describedby=${place.describedBy || nothing}
@@ -253,6 +263,7 @@ function flagWidget(app: App, place: Place): TemplateResult {
       type="checkbox"
       .checked=${live(place.raw === true)}
       ?disabled=${place.isReadOnly}
+      aria-label=${place.name ?? nothing}
       aria-describedby=${place.describedBy || nothing}
       @change=${(event: Event) => choose(app, place.pointer, (event.target as HTMLInputElement).checked, place.spec.label)}
     />
