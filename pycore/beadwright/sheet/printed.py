@@ -45,6 +45,8 @@ def sheet_html(job: Mapping[str, Any], answer: Mapping[str, Any]) -> bytes:
     ]
     for joint in answer["joints"].values():
         parts += _joint_html(joint)
+    if answer["takeoff"].get("answers"):
+        parts += ["<section><h2>Take-off</h2>", *_body_html(answer["takeoff"]), "</section>"]
     parts += _cautions_html(answer["cautions"])
     parts.append("<div class='sign'><div>Prepared by, date</div><div>Checked by, date</div><div>Accepted by, date</div></div></body></html>")
     return "".join(parts).encode("utf-8")
@@ -53,6 +55,12 @@ def sheet_html(job: Mapping[str, Any], answer: Mapping[str, Any]) -> bytes:
 def _joint_html(joint: Mapping[str, Any]) -> Iterable[str]:
     yield f"<section><h2>{escape(joint['name'])}</h2><p>{escape(joint['kind_word'])}{' – ' + escape(joint['place']) if joint['place'] else ''}</p>"
     yield f"<p class='verdict'>{escape(joint['verdict_word'])}</p><p>{escape(joint['verdict_text'])}</p>"
+    yield from _body_html(joint)
+    yield "</section>"
+
+
+def _body_html(joint: Mapping[str, Any]) -> Iterable[str]:
+    """Drawing, bands, tables, notes and working of one part of the answer."""
     if joint.get("drawing"):
         yield joint["drawing"]
     if joint.get("answers"):
@@ -78,7 +86,6 @@ def _joint_html(joint: Mapping[str, Any]) -> Iterable[str]:
                 f"{' = ' + escape(step['numbers']) if step['numbers'] else ''} = <b>{escape(step['result'])}</b>{remark}"
                 f"<br><span class='src'>{escape(step['source'])} ({escape(step['status'])})</span></div>"
             )
-    yield "</section>"
 
 
 def _cautions_html(cautions: Iterable[Mapping[str, Any]]) -> Iterable[str]:
@@ -99,20 +106,27 @@ def sheet_text(job: Mapping[str, Any], answer: Mapping[str, Any]) -> str:
     lines += [f"{issue['severity'].upper()} {issue['path'] or '/'}: {issue['message']}" for issue in answer["issues"]]
     for joint in answer["joints"].values():
         heading = f"{joint['name']} ({joint['kind_word'].lower()})"
-        lines += ["", heading, "-" * len(heading), f"{joint['verdict_word'].upper()}: {joint['verdict_text']}"]
-        lines += [f"  {band['question']:<32} {band['answer']}\n{'':35}{band['detail']}" for band in joint.get("answers", ())]
-        for table in joint.get("tables", ()):
-            lines += ["", f"  {table['title']}", *_text_table(table)]
-        lines += [f"  {note['severity'].upper()}: {note['text']}" for note in joint.get("notes", ())]
-        if joint.get("steps"):
-            lines += ["", "  Working"]
-            for step in joint["steps"]:
-                numbers = f" = {step['numbers']}" if step["numbers"] else ""
-                lines += [f"    {step['title']}", f"      {step['symbol']} = {step['formula']}{numbers} = {step['result']}", f"      [{step['source']}; {step['status']}]"]
+        lines += ["", heading, "-" * len(heading), f"{joint['verdict_word'].upper()}: {joint['verdict_text']}", *_body_text(joint)]
+    if answer["takeoff"].get("answers"):
+        lines += ["", "Take-off", "--------", *_body_text(answer["takeoff"])]
     if answer["cautions"]:
         lines += ["", "Cautions", "--------"]
         lines += [f"  {item['title']}: {item['text']}\n    [{item['source']}]" for item in answer["cautions"]]
     return "\n".join(lines) + "\n"
+
+
+def _body_text(joint: Mapping[str, Any]) -> list[str]:
+    """Bands, tables, notes and working of one part of the answer."""
+    lines = [f"  {band['question']:<32} {band['answer']}\n{'':35}{band['detail']}" for band in joint.get("answers", ())]
+    for table in joint.get("tables", ()):
+        lines += ["", f"  {table['title']}", *_text_table(table)]
+    lines += [f"  {note['severity'].upper()}: {note['text']}" for note in joint.get("notes", ())]
+    if joint.get("steps"):
+        lines += ["", "  Working"]
+        for step in joint["steps"]:
+            numbers = f" = {step['numbers']}" if step["numbers"] else ""
+            lines += [f"    {step['title']}", f"      {step['symbol']} = {step['formula']}{numbers} = {step['result']}", f"      [{step['source']}; {step['status']}]"]
+    return lines
 
 
 def _text_table(table: Mapping[str, Any]) -> list[str]:

@@ -15,6 +15,7 @@ from ..takeoff.packs import LIMIT
 from ..takeoff.runs import SECTION_WORDS, Run
 from ..takeoff.total import Need, Order, PackLine, Sum, Takeoff
 from ..takeoff.volume import feet_per_gallon, metres_per_package
+from ..working import COMMON_PRACTICE, DEFINITION, ENTERED, Step, Value
 from . import writing
 from .bars import Bar, bars_svg
 
@@ -137,6 +138,7 @@ def takeoff_dict(taken: Takeoff, system: str) -> dict[str, Any]:
         "sums": {key: [_sum_dict(item, key, system) for item in sums] for key, sums in taken.sums.items()},
         "answers": _bands(taken, system),
         "tables": _tables(taken, system),
+        "steps": [writing.step_lines(step, system) for step in _steps(taken, system)],
         "drawing": _drawing(taken, system),
         "notes": [{"severity": severity, "text": text} for severity, text in _notes(taken, system)],
     }  # fmt: skip
@@ -432,6 +434,43 @@ def _yields_table(taken: Takeoff, system: str) -> dict[str, Any]:
         square = metres_per_package(pack.volume_ml, run.rectangle_mm2)
         rows.append(_row(f"{word} {size}", writing.area(run.area_mm2, system), run_text(per_pack, system), run_text(square, system), f"{plain(feet_per_gallon(run.area_mm2), 1)} ft"))
     return _table("yields", "How far a package goes", ("Section", "True section", f"Per {pack.volume}", "By w × d", "Per US gallon"), rows, "Before waste and residue. ‘By w × d’ is the short cut, to hold against a rule of thumb.")
+
+
+# ---- working ----------------------------------------------------------------------------------
+
+
+def _steps(taken: Takeoff, system: str) -> list[Step]:
+    """How the figures come about, worked on the run and the order that take most."""
+    if not taken.runs:
+        return []
+    settings = taken.source.settings
+    run = max(taken.runs, key=lambda item: (item.net_ml, item.path))
+    order = max(taken.orders, key=lambda item: (item.gross_ml, item.key))
+    one, unit = Value(_span(run.one_length_m, system), "number"), "ft" if system == INCH else "m"
+    cubic = " × 12 / 231" if system == INCH else ""  # in² × ft to US gallons of 231 in³
+    net, waste = _litres(order.net_ml, system), Value(run.waste_fraction, "percent")
+    steps = [
+        Step("run-volume", f"Net volume of the largest run, {run.name}", "V", f"A · L · n · lines{cubic}", f"{{A}} × {{L}} {unit} × {{n}} × {{k}}{cubic}", {"A": Value(run.area_mm2, "area"), "L": one, "n": Value(run.count, "number"), "k": Value(run.lines, "number")}, _litres(run.net_ml, system), "Geometry of the true section" + ("; a US gallon is 231 in³" if cubic else "; a mm² is a ml for each metre"), DEFINITION),
+        Step("run-waste", "With its waste", "V_b", WASTE_WORDS[settings.waste_by], "{V} × (1 + {p})" if settings.waste_by == "times" else "{V} / (1 − {p})", {"V": _litres(run.net_ml, system), "p": waste}, _litres(run.gross_ml, system), "Definition chosen in the settings; the share is common practice or entered", COMMON_PRACTICE),
+        Step("order-volume", f"Largest order, {_order_name(order)}", "Σ V_b", "sum over its runs", f"from {{V}} net in {{L}} {unit}", {"V": net, "L": Value(_span(order.length_m, system), "number")}, _litres(order.gross_ml, system), "Sum", DEFINITION),
+    ]
+    for line in order.lines[:1]:
+        steps.append(Step("usable", f"Usable in one {line.pack.name}", "v", "content − residue, at most what is placed within the pot life", "{c} − {r}", {"c": _litres(float(line.pack.volume_ml), system), "r": _litres(float(line.pack.residue_ml), system)}, _litres(float(line.usable_ml), system), "Content and residue as entered, else common sizes from memory", ENTERED))
+        steps.append(Step("mix", "Packages", "n", "least Σ n·c with Σ n·v ≥ Σ V_b, n whole; exact search over packages and boxes", "covers {V}", {"V": _litres(order.gross_ml, system)}, _litres(order.usable_ml, system), f"Depth-first search with bounds. {_proof_text(order, settings.currency)}", DEFINITION))
+    if run.prime_m2:
+        steps.append(Step("primer", "Faces to prime, same run", "F in m²" if system == METRIC else "F in ft²", "Σ (bond + overlap) · L over the bond faces", f"overlap {{o}}, {{L}} {unit} of bead", {"o": Value(settings.primer_overlap_mm, "length"), "L": Value(_span(run.length_m, system), "number")}, Value(run.prime_m2 if system == METRIC else run.prime_m2 / 0.09290304, "number"), "Geometry; overlap by common practice", COMMON_PRACTICE))
+    return steps
+
+
+def _litres(value_ml: float, system: str) -> Value:
+    """A volume of working, in a unit that keeps its digits."""
+    if system == INCH:
+        return Value(value_ml, "volume", "US gal" if value_ml >= 3785.411784 else "US fl oz")
+    return Value(value_ml, "volume", "l" if value_ml >= 1000.0 else "ml")
+
+
+def _span(length_m: float, system: str) -> float:
+    return length_m / 0.3048 if system == INCH else length_m
 
 
 # ---- picture and starters ---------------------------------------------------------------------

@@ -264,3 +264,23 @@ def test_formula_text_is_kept_as_text_and_refused_at_its_cell():
 
 def test_an_empty_paste_says_so():
     assert desk.paste_runs("  \n", "metric")["issues"][0]["code"] == "empty"
+
+
+# ---- printed ----------------------------------------------------------------------------------
+
+
+def test_the_printed_sheet_holds_the_take_off_with_the_same_total():
+    answer = desk.evaluate(DEMO)["takeoff"]
+    gross = next(band for band in answer["answers"] if band["key"] == "sealant")["answer"]
+    page, text = desk.export(DEMO, "sheet")[2].decode(), desk.export(DEMO, "text")[2].decode()
+    for shown in (page[page.index(">Take-off<") :], text[text.index("\nTake-off\n") :]):
+        assert gross in shown and answer["cost"] in shown and "Working" in shown
+    assert ">Take-off<" not in desk.export(make_takeoff([]) | {"takeoff": {}}, "sheet")[2].decode()
+
+
+def test_every_step_can_be_followed():
+    for job in (DEMO, DEMO | {"units": "inch"}):
+        steps = desk.evaluate(job)["takeoff"]["steps"]
+        assert len(steps) >= 5
+        for step in steps:
+            assert step["title"] and step["formula"] and step["result"] and step["source"] and "{" not in step["numbers"], step

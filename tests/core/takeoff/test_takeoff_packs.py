@@ -212,7 +212,7 @@ def test_bad_packages_are_told_at_their_cell_and_the_others_serve():
 
 
 def test_a_thousand_runs_in_forty_colours():
-    """The budget is 0.3 s in CPython; three times that here, for a busy machine."""
+    """The budget is 0.3 s in CPython. Processor time, the best of three fresh jobs, so that a busy machine does not decide."""
     from beadwright import desk
 
     rows = [{"section": "butt", "width": f"{10 + index % 17} mm", "length": f"{3 + index % 29}.{index % 10} m", "count": str(1 + index % 5), "colour": f"colour {index % 40}", "phase": "1", "zone": f"z{index % 7}"} for index in range(1000)]
@@ -220,13 +220,16 @@ def test_a_thousand_runs_in_forty_colours():
                      {"name": "P", "volume": "20 l", "residue": "200 ml", "price": "410.00"}]  # fmt: skip
     job = make_takeoff(rows, packs=packs_offered, waste="10 %")
     desk.evaluate(make_takeoff([bed()]))  # tables are read once
-    start = time.perf_counter()
-    found = desk.evaluate(job)["takeoff"]
-    first = time.perf_counter() - start
-    assert len(found["orders"]) == 40 and all(item["proof"]["is_optimal"] for item in found["orders"])
-    job["takeoff"]["runs"][500]["length"] = "77 m"
-    start = time.perf_counter()
-    desk.evaluate(job)
-    edit = time.perf_counter() - start
-    print(f"\n1,000 runs in 40 colours: first {first * 1e3:.0f} ms, one edit {edit * 1e3:.0f} ms")
-    assert first < 0.9 and edit < 0.6
+    firsts, edits = [], []
+    for number in range(3):
+        job["takeoff"]["waste"] = f"{10 + number} %"  # nothing of the round before is kept
+        start = time.process_time()
+        found = desk.evaluate(job)["takeoff"]
+        firsts.append(time.process_time() - start)
+        assert len(found["orders"]) == 40 and all(item["proof"]["is_optimal"] for item in found["orders"])
+        job["takeoff"]["runs"][500]["length"] = f"{77 + number} m"
+        start = time.process_time()
+        desk.evaluate(job)
+        edits.append(time.process_time() - start)
+    print(f"\n1,000 runs in 40 colours: first {min(firsts) * 1e3:.0f} ms, one edit {min(edits) * 1e3:.0f} ms")
+    assert min(firsts) < 0.3 and min(edits) < 0.15
