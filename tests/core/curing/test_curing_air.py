@@ -6,12 +6,12 @@ import json
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from jobs import issues_at, make_job
 from scipy.integrate import quad
 
 from beadwright import desk
 from beadwright.curing import air
 from beadwright.physics import room_air
+from jobs import issues_at, make_job
 
 ROOM = {"length": "4 m", "width": "3 m", "height": "2.5 m", "air_change": "0.5", "mixing": "1", "air": "23 degC", "humidity": "50 %", "sealant": "s", "joint": "j", "packages": "1", "package": "300 ml", "spread": "0 h"}
 changes = st.floats(0.05, 20.0)

@@ -1,16 +1,16 @@
 """The calendar file: read back by an independent reader and by a strict parser, also over a change of the clocks."""
 
 import re
-from datetime import datetime, timedelta, timezone
+from datetime import UTC, datetime, timedelta
 from zoneinfo import ZoneInfo
 
 import pytest
 from icalendar import Calendar
-from jobs import make_job
 
 from beadwright import desk
 from beadwright.curing.clock import Clock, zone_rules
 from beadwright.sheet.calendar import Event, calendar_bytes
+from jobs import make_job
 
 ZONES = ["Europe/Berlin", "America/New_York", "Australia/Lord_Howe", "Asia/Kolkata", "Europe/Dublin", "America/Sao_Paulo", "Pacific/Apia", "UTC"]
 NAME = re.compile(r"^[A-Z][A-Z0-9-]*$")
@@ -75,7 +75,7 @@ def job_with(when, zone, **joint):
 def at_true(clock_text, zone, hours):
     """The moment some real hours after a clock time, by the standard library."""
     start = datetime.strptime(clock_text, "%Y-%m-%d %H:%M").replace(tzinfo=ZoneInfo(zone))
-    return start.astimezone(timezone.utc) + timedelta(hours=hours)
+    return start.astimezone(UTC) + timedelta(hours=hours)
 
 
 @pytest.mark.parametrize("zone", ZONES)
@@ -89,7 +89,7 @@ def test_the_file_is_read_back_with_the_right_moments(zone, when):
     stages = {stage["key"]: stage for stage in desk.evaluate(job)["cure"]["runs"]["r"]["stages"] if stage["applies"]}
     assert set(events) == set(stages)
     for key, stage in stages.items():
-        moment = events[key]["DTSTART"].dt.astimezone(timezone.utc)
+        moment = events[key]["DTSTART"].dt.astimezone(UTC)
         late = moment - at_true(when, zone, stage["hours"])
         # rounded up to the next quarter of an hour, never earlier
         assert timedelta(seconds=-2) <= late < timedelta(minutes=15, seconds=2), key
@@ -133,7 +133,7 @@ def test_an_event_in_the_doubled_hour_is_not_an_hour_off():
     first = clock.hours(datetime(2026, 10, 25, 2, 30))
     data = calendar_bytes([Event("a", first, 15, "a", "", "", first), Event("b", first + 1.0, 15, "b", "", "", first)], clock, "Test")
     strictly(data)
-    found = {str(event["UID"]): event["DTSTART"].dt.astimezone(timezone.utc) for event in Calendar.from_ical(data).walk("VEVENT")}
+    found = {str(event["UID"]): event["DTSTART"].dt.astimezone(UTC) for event in Calendar.from_ical(data).walk("VEVENT")}
     assert found["b"] - found["a"] == timedelta(hours=1)
 
 

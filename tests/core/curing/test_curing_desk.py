@@ -8,10 +8,10 @@ from datetime import datetime
 import pytest
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
-from jobs import issues_at, make_job
 
 from beadwright import desk
 from beadwright.physics import section_solve
+from jobs import issues_at, make_job
 
 
 def days(count=5, least="8 degC", most="16 degC", humidity="65 %", first=1, **more):

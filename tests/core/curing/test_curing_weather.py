@@ -1,5 +1,6 @@
 """Weather as a dose: day rows, readings, what stands in, and that splitting changes nothing."""
 
+import itertools
 from datetime import datetime
 
 import numpy as np
@@ -71,7 +72,7 @@ def test_a_dew_point_is_as_good_as_a_humidity():
 def test_readings_hold_until_the_next_and_win_over_days():
     rows = [Row(datetime(2026, 5, 1), None, 6.0, 18.0, 0.6, None), Row(datetime(2026, 5, 1), 10.0, 14.0, 14.0, 0.5, None), Row(datetime(2026, 5, 1), 12.5, 16.0, 16.0, 0.4, None)]
     pieces = pieces_of(rows, PLAIN)
-    assert all(one.to_h <= two.from_h + 1e-9 for one, two in zip(pieces, pieces[1:], strict=False))
+    assert all(one.to_h <= two.from_h + 1e-9 for one, two in itertools.pairwise(pieces))
     start = PLAIN.hours(datetime(2026, 5, 1))
     (held,) = [piece for piece in pieces if piece.from_h <= start + 11.0 < piece.to_h]
     assert (held.air_c, held.humidity_fraction) == (14.0, 0.5)
@@ -83,7 +84,7 @@ def test_readings_hold_until_the_next_and_win_over_days():
 def test_splitting_the_weather_changes_nothing(air, damp, cuts, at):
     whole = climate_of(constant(air, damp), "mean", CAUTIOUS)
     edges = [0.0, *sorted(cuts), 48.0]
-    parts = [Piece(low, high, air, damp, air) for low, high in zip(edges, edges[1:], strict=False) if high - low > 1e-6]
+    parts = [Piece(low, high, air, damp, air) for low, high in itertools.pairwise(edges) if high - low > 1e-6]
     split = climate_of(parts, "mean", CAUTIOUS)
     assert split.dose(at) == pytest.approx(whole.dose(at), rel=1e-6, abs=1e-7)
 
