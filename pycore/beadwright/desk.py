@@ -23,7 +23,16 @@ from .field.face import at_the_face
 from .fields import GROUPS, Choice, Field, Reads
 from .job import blank, blank_row, compare, merge, open_bytes, to_bytes
 from .quantity import INCH, METRIC, sign_of
-from .sheet import calendar, cure_print, cure_sheet, joint_sheet, printed, schedule, takeoff_files, takeoff_sheet
+from .sheet import (
+    calendar,
+    cure_print,
+    cure_sheet,
+    joint_sheet,
+    printed,
+    schedule,
+    takeoff_files,
+    takeoff_sheet,
+)
 from .sheet.face_sheet import FACE_WORDS
 from .sheet.takeoff_compare import compare_dict
 from .takeoff.alternative import changed

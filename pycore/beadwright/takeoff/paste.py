@@ -104,7 +104,7 @@ def read_pasted(text: str, units: str, job: Mapping[str, Any] | None = None, col
         answer["rows"].append(_row(line, found, answer["columns"], decimal, names, number, issues))
     taken = sum(column["field"] is not None for column in answer["columns"])
     left = width - taken
-    return answer | {"text": f"{len(answer['rows'])} rows; {taken} column{'s' if taken != 1 else ''} understood{f', {left} left aside' if left else ''}."}
+    return answer | {"text": f"{len(answer['rows'])} row{'s' if len(answer['rows']) != 1 else ''}; {taken} column{'s' if taken != 1 else ''} understood{f', {left} left aside' if left else ''}."}
 
 
 def _issue(code: str, message: str, row: int | None = None, column: int | None = None) -> dict[str, Any]:
