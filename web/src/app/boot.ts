@@ -143,6 +143,8 @@ function listenToCore(app: App): void {
       askForAnswer(app);
       void takeForms(app);
     }
+    // The section of a bead is solved with numpy, which comes later than the rest.
+    if (now.numpy === "ready" && was.numpy !== "ready" && app.state.route.page === "cure") askForAnswer(app);
   });
   if (app.core.status.phase === "ready") void takeForms(app);
 }

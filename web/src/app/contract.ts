@@ -136,7 +136,40 @@ export interface Evaluation {
   joints: Record<string, JointAnswer>;
   takeoff?: TakeoffAnswer | null;
   cautions: Caution[];
+  cure?: CureAnswer | null;
   facts: { label: string; value: string }[];
+}
+
+export interface CureDrawing {
+  key: string;
+  title: string;
+  svg: string;
+}
+
+interface CurePart {
+  trouble?: null | string | { code: string; text: string };
+  answers?: Answer[];
+  tables?: AnswerTable[];
+  drawings?: CureDrawing[];
+  notes?: { severity: string; key?: string; text: string }[];
+  steps?: Step[];
+}
+
+export interface CureRun extends CurePart {
+  id: string;
+  name: string;
+  joint: string | null;
+  start_text: string;
+  section?: { method: string } | null;
+  record?: { label: string; value: string }[];
+  headline?: { through: string | null; green: string | null } | null;
+}
+
+/** Empty where the job has no cure; short where it was not asked for. */
+export interface CureAnswer extends CurePart {
+  short?: boolean;
+  runs?: Record<string, CureRun>;
+  room?: CurePart | null;
 }
 
 /** The take-off; an empty object while there is none, the totals alone where it is not asked for in full. */

@@ -83,6 +83,12 @@ export function duplicateRow(app: App, listPointer: string, index: number, label
   return copy;
 }
 
+/** A copy at the end of its list, with some of its fields changed. */
+export function appendCopy(app: App, listPointer: string, index: number, change: Row, label: string): void {
+  const row = getRows(app.job, listPointer)[index];
+  if (row !== undefined) addRow(app, listPointer, { ...withFreshIds(structuredClone(row)), ...change }, label);
+}
+
 function withFreshIds(row: Row): Row {
   row["id"] = newId();
   for (const value of Object.values(row)) {

@@ -6,7 +6,7 @@ import type { Change, Conflict, ExportFile, Row } from "./contract";
 import { commitPending, newId } from "./editing";
 import { go, keepNew, readFile, refreshJobs, refreshKept, showLoose } from "./jobs";
 
-export type ExportKind = "job" | "sheet" | "text" | "schedule" | "takeoff-csv" | "takeoff-xlsx";
+export type ExportKind = "job" | "sheet" | "text" | "schedule" | "takeoff-csv" | "takeoff-xlsx" | "calendar" | "cure-sheet";
 
 /** Larger files are not read at all; the core has the finer limits. */
 const MOST_FILE_BYTES = 64 * 1024 ** 2;

@@ -11,6 +11,7 @@ export type Route =
   | { page: "face"; job: string; joint: string }
   | { page: "sheet"; job: string; joint: string | null }
   | { page: "takeoff"; job: string }
+  | { page: "cure"; job: string }
   | { page: "history"; job: string };
 
 export function parseRoute(hash: string): Route {
@@ -22,6 +23,7 @@ export function parseRoute(hash: string): Route {
   if (part === "joint" && sub !== undefined) return { page: last === "face" ? "face" : "joint", job: id, joint: sub };
   if (part === "sheet") return { page: "sheet", job: id, joint: sub ?? null };
   if (part === "takeoff") return { page: "takeoff", job: id };
+  if (part === "cure") return { page: "cure", job: id };
   if (part === "history") return { page: "history", job: id };
   return { page: "wall", job: id };
 }
@@ -46,6 +48,8 @@ export function href(route: Route): string {
       return `#/job/${code(route.job)}/sheet${route.joint === null ? "" : "/" + code(route.joint)}`;
     case "takeoff":
       return `#/job/${code(route.job)}/takeoff`;
+    case "cure":
+      return `#/job/${code(route.job)}/cure`;
     case "history":
       return `#/job/${code(route.job)}/history`;
   }

@@ -56,6 +56,7 @@ function wantedInFull(app: App): string[] {
   if (route.page === "joint" || route.page === "face") return [route.joint];
   if (route.page === "sheet") return route.joint !== null ? [route.joint] : getRows(app.job, "/joints").map((row) => String(row["id"]));
   if (route.page === "takeoff") return ["takeoff"];
+  if (route.page === "cure") return ["cure"];
   return [];
 }
 
@@ -65,6 +66,10 @@ function newsOf(app: App, next: Evaluation): string | null {
   if (route.page === "takeoff") {
     const text = next.takeoff?.left_out_text;
     return text !== undefined && text !== (app.state.result?.evaluation.takeoff?.left_out_text ?? "") ? text || "Nothing is left out." : null;
+  }
+  if (route.page === "cure") {
+    const first = next.cure?.answers?.[0];
+    return first !== undefined && first.answer !== app.state.result?.evaluation.cure?.answers?.[0]?.answer ? `${first.question} ${first.answer}.` : null;
   }
   if (route.page !== "joint" && route.page !== "face") return null;
   const joint = next.joints[route.joint];

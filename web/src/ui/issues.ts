@@ -39,7 +39,7 @@ export function issueList(app: App, wanted: (issue: Issue) => boolean): Template
 /** On the wall page a joint's fault needs the joint's name. */
 function placeWords(app: App, issue: Issue): string {
   const [list, index, at] = split(issue.path);
-  if (list === "takeoff" && index !== undefined && at !== undefined) {
+  if ((list === "takeoff" || list === "cure") && index !== undefined && at !== undefined) {
     const row = getRows(app.job, `/${list}/${index}`)[Number(at)];
     return row === undefined ? "" : ` (${rowNameOf(row, "Row", Number(at))})`;
   }
@@ -61,6 +61,8 @@ export function jump(app: App, issue: Issue, event: Event): void {
   } else if (list === "takeoff") {
     showRow(app, issue.path);
     if (app.state.route.page !== "takeoff") go({ page: "takeoff", job });
+  } else if (list === "cure") {
+    if (app.state.route.page !== "cure") go({ page: "cure", job });
   } else if (app.state.route.page !== "wall") go({ page: "wall", job });
   openParts(app, partsAround(app, issue.path));
   focusSoon(fieldId(issue.path));
@@ -74,6 +76,8 @@ function partsAround(app: App, path: string): string[] {
     .filter((section) => section.advanced.some((spec) => spec.key === key))
     .map((section) => `more ${base} ${section.title}`);
   const [list, index] = split(path);
+  // The rows of the cure stand behind their names (see ui/cure.ts).
+  if (list === "cure") return [...titles, `row /cure/${index} ${split(path)[2]}`];
   if (list === "sealants") return [...titles, `sealant ${index}`];
   if (list === "takeoff") return [...titles, SETTINGS_BLOCK, ...rowParts(app, path)];
   return list !== "joints" && list !== "site" ? [...titles, "job block"] : titles;

@@ -10,6 +10,7 @@ import { href, jobOf } from "../app/routes";
 import { setTheme } from "../app/theme";
 import type { Theme } from "../app/state";
 import { backupText, clockText } from "../store/texts";
+import { curePage } from "./cure";
 import { facePage } from "./face";
 import { helpPage } from "./help";
 import { historyPage } from "./history";
@@ -51,6 +52,7 @@ function head(app: App): TemplateResult {
     </nav>
     <div class="tools">
       ${job !== null ? html`<a class="not-narrow" href=${href({ page: "takeoff", job })} aria-current=${route.page === "takeoff" ? "page" : nothing}>Take-off</a>` : nothing}
+      ${job !== null ? html`<a class="not-narrow" href=${href({ page: "cure", job })} aria-current=${route.page === "cure" ? "page" : nothing}>Cure</a>` : nothing}
       ${job !== null ? html`<a href=${href({ page: "sheet", job, joint: null })} aria-current=${route.page === "sheet" ? "page" : nothing}>Sheet</a>` : nothing}
       ${job !== null && open !== null && open.readOnly === null ? undoButtons(app) : nothing}
     </div>
@@ -156,6 +158,8 @@ function page(app: App): TemplateResult {
       return sheetPage(app, forms, route.joint);
     case "takeoff":
       return takeoffPage(app, forms);
+    case "cure":
+      return curePage(app, forms);
     case "history":
       return historyPage(app);
   }

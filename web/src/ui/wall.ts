@@ -41,6 +41,7 @@ export function wallPage(app: App, forms: Forms): TemplateResult {
         <div class="actions">
           ${app.open.readOnly === null ? html`<button type="button" class="main" data-testid="add-joint" @click=${() => addJoint(app, forms)}>Add a joint</button>` : nothing}
           <a class="button" data-testid="to-takeoff" href=${href({ page: "takeoff", job: app.open.id })}>Take-off</a>
+          <a class="button" data-testid="to-cure" href=${href({ page: "cure", job: app.open.id })}>Cure</a>
           <a class="button" href=${href({ page: "sheet", job: app.open.id, joint: null })}>Sheet to print</a>
           <button type="button" data-testid="export-job" @click=${() => void exportFile(app, "job", "save")}>Save job file</button>
           <a class="button" href=${href({ page: "history", job: app.open.id })}>Earlier copies</a>

@@ -1,0 +1,302 @@
+// The cure clock: when each run sealed is through, on one line with the weather; the runs and the weather beside it.
+
+import { html, nothing, type TemplateResult } from "lit";
+import { repeat } from "lit/directives/repeat.js";
+import type { App } from "../app/app";
+import type { CureAnswer, CureDrawing, CureRun, Forms, Row } from "../app/contract";
+import { addRow, appendCopy, duplicateRow, newId, removeRow } from "../app/editing";
+import { blankRow, groupOf, systemOf, type Section } from "../app/fields";
+import { exportFile, type ExportKind } from "../app/files";
+import { today } from "../app/jobs";
+import { get, getRow, getRows, rowNameOf } from "../app/pointer";
+import { bands, cautionsPart, notes, staleNote, tableDrawers, waiting, workingPart } from "./answers";
+import { drawingOf } from "./drawing";
+import { fieldId } from "./field";
+import { focusSoon, jumpTo } from "./focus";
+import { disclosure, form, openParts } from "./form";
+import { issueList } from "./issues";
+import { titleStrip } from "./title_block";
+
+/** The core's note that the section is not solved yet. */
+const ESTIMATE = "no-numpy";
+
+const ADD_WORDS: Readonly<Record<string, string>> = { sealed: "Add a run", weather: "Add a day", cut: "Add a cut test", two_part: "Add two-part figures" };
+
+const EXPORTS: readonly { kind: ExportKind; word: string }[] = [
+  { kind: "calendar", word: "Calendar file" },
+  { kind: "cure-sheet", word: "Cure sheet" },
+];
+
+export function curePage(app: App, forms: Forms): TemplateResult {
+  const answer = app.state.result?.evaluation.cure ?? {};
+  return html`<div class="page two is-cure">
+    <div class="sheet">
+      ${titleStrip(app)} ${head(app, forms, answer)} ${issueList(app, (issue) => issue.path.startsWith("/cure/"))}
+      ${getRows(app.job, "/cure/sealed").length === 0 ? nothingYet(forms) : nothing} ${isFull(answer) ? answersOf(app, forms, answer) : nothing}
+    </div>
+    ${inputs(app, forms, answer)}
+  </div>`;
+}
+
+/** Another page asks for no cure, and its answer may still be here. */
+function isFull(answer: CureAnswer): boolean {
+  return answer.short === false;
+}
+
+function head(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
+  const hasRuns = isFull(answer) && Object.keys(answer.runs ?? {}).length > 0;
+  const isMissing = (app.state.result === null || answer.short === true) && app.state.coreFault === null;
+  return html`<header class="joint-head">
+    <h1 tabindex="-1">${groupOf(forms, "cure").label}</h1>
+    <div class="actions">
+      <button type="button" class="only-narrow" @click=${() => jumpTo("sealed-title")}>To the fields</button>
+      ${hasRuns
+        ? html`${EXPORTS.map(({ kind, word }) => html`<button type="button" data-testid="export-${kind}" @click=${() => void exportFile(app, kind, "save")}>${word}</button>`)}
+            <button type="button" data-testid="print" @click=${() => window.print()}>Print</button>`
+        : nothing}
+    </div>
+    ${isMissing || app.state.coreFault !== null ? waiting(app) : nothing} ${estimate(app, answer)} ${app.state.isStale && isFull(answer) ? staleNote() : nothing}
+  </header>`;
+}
+
+/** Until numpy is there the answers are of the throat alone: said once at the top, in the core's words. */
+function estimate(app: App, answer: CureAnswer): TemplateResult | typeof nothing {
+  const said = Object.values(answer.runs ?? {})
+    .flatMap((run) => run.notes ?? [])
+    .find((note) => note.key === ESTIMATE);
+  if (said === undefined) return nothing;
+  const isBusy = app.state.core.numpy !== "failed";
+  return html`<p class="stale" data-testid="estimate" aria-busy=${isBusy ? "true" : "false"}>${said.text}</p>`;
+}
+
+function nothingYet(forms: Forms): TemplateResult {
+  const word = (key: string): string => groupOf(forms, key).label;
+  return html`<ol class="first-steps" data-testid="no-runs">
+    <li><button type="button" class="plain" @click=${() => jumpTo("sealed-title")}>${word("sealed")}: say which joint, and when</button></li>
+    <li><button type="button" class="plain" @click=${() => jumpTo("weather-title")}>${word("weather")}: a row for each day, or paste them</button></li>
+    <li><button type="button" class="plain" @click=${() => jumpTo("room-title")}>${word("room")}: for what comes off indoors</button></li>
+  </ol>`;
+}
+
+function answersOf(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
+  const runs = Object.values(answer.runs ?? {});
+  const room = answer.room ?? null;
+  return html`
+    ${bands(answer.answers ?? [])} ${notes(answer.notes ?? [])} ${drawings(answer.drawings ?? [])}
+    <div class="drawers">${tableDrawers(app, answer.tables ?? [], "cure")}</div>
+    ${runs.map((run) => runPart(app, run))}
+    ${room === null
+      ? nothing
+      : html`<section class="part" aria-labelledby="room-answer-title" data-testid="cure-room">
+          <h2 id="room-answer-title">${valueOr(getRow(app.job, "/cure/room")["name"], groupOf(forms, "room").label)}</h2>
+          ${room.trouble ? html`<p class="waiting">${textOf(room.trouble)}</p>` : nothing} ${bands(room.answers ?? [])}
+          ${notes(room.notes ?? [])} ${drawings(room.drawings ?? [])}
+          <div class="drawers">${tableDrawers(app, room.tables ?? [], "room")} ${workingPart(app, room.steps ?? [], "working room")}</div>
+        </section>`}
+    ${care(app, runs)}
+  `;
+}
+
+function runPart(app: App, run: CureRun): TemplateResult {
+  const title = `run-${run.id}`;
+  const filled = (run.record ?? []).filter((line) => line.value !== "");
+  return html`<section class="part" aria-labelledby=${title} data-testid="cure-run-${run.id}" data-method=${run.section?.method ?? nothing}>
+    <h2 id=${title}>${run.name}</h2>
+    ${run.start_text ? html`<p class="detail">${run.start_text}</p>` : nothing}
+    ${run.trouble ? html`<p class="waiting" data-testid="trouble">${textOf(run.trouble)}</p>` : nothing} ${bands(run.answers ?? [])}
+    ${notes(run.notes ?? [])} ${drawings(run.drawings ?? [])}
+    <div class="drawers">
+      ${tableDrawers(app, run.tables ?? [], run.id)}
+      ${filled.length > 0
+        ? html`<section class="drawer">
+            ${disclosure(
+              app,
+              `record ${run.id}`,
+              "Sealing record",
+              () => html`<dl class="values">${filled.map((line) => html`<div><dt>${line.label}</dt><dd>${line.value}</dd></div>`)}</dl>`,
+              false,
+              true,
+            )}
+          </section>`
+        : nothing}
+      ${workingPart(app, run.steps ?? [], `working ${run.id}`)}
+    </div>
+  </section>`;
+}
+
+/** Each drawing has its caption; the tables beside it say the same in words. */
+function drawings(items: CureDrawing[]): TemplateResult[] {
+  return items.map((item) => {
+    const drawing = drawingOf(item.svg);
+    return html`<figure class="cure-drawing is-${item.key}" data-testid="drawing-${item.key}">
+      <figcaption class=${isTitled(drawing, item.title) ? "hidden-word" : ""}>${item.title}</figcaption>
+      ${drawing === null ? nothing : html`<div class="drawing" role="region" tabindex="0" aria-label=${item.title}>${drawing}</div>`}
+    </figure>`;
+  });
+}
+
+/** Whether the drawing bears its caption in itself. */
+function isTitled(drawing: SVGSVGElement | null, title: string): boolean {
+  return drawing?.querySelector("title")?.textContent === title;
+}
+
+function care(app: App, runs: CureRun[]): TemplateResult | typeof nothing {
+  const sealed = new Set(runs.map((run) => run.joint));
+  const own = (app.state.result?.evaluation.cautions ?? []).filter((item) => item.joints?.some((id) => sealed.has(id)));
+  if (own.length === 0) return nothing;
+  return html`<section class="part" aria-labelledby="cautions-title">
+    <h2 id="cautions-title">Take care</h2>
+    ${cautionsPart(app, own, "of the cure", true)}
+  </section>`;
+}
+
+function textOf(trouble: string | { text: string }): string {
+  return typeof trouble === "string" ? trouble : trouble.text;
+}
+
+function valueOr(value: unknown, other: string): string {
+  return typeof value === "string" && value.trim() !== "" ? value : other;
+}
+
+// ---- the fields ----------------------------------------------------------------------------------
+
+/** The days may also be typed as text; that field stands with the rows that it adds to. */
+const isWeather = (section: Section): boolean => section.title === "Weather";
+
+function inputs(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
+  const cure = groupOf(forms, "cure");
+  const label = (key: string): string => groupOf(forms, key).label;
+  return html`<div class="inputs" role="region" aria-label="What is known of the cure" tabindex="-1">
+    <section aria-labelledby="sealed-title" data-group="sealed">
+      <h2 id="sealed-title" tabindex="-1" class="inputs-title">${label("sealed")}</h2>
+      ${rowsOf(app, forms, "sealed", { name: (row, index) => runName(row, index, label("sealed"), answer), add: () => addRun(app, forms), copy: (index, name) => void duplicateRow(app, "/cure/sealed", index, `Copied ${name}`) })}
+    </section>
+    <section aria-labelledby="weather-title" data-group="weather">
+      <h2 id="weather-title" tabindex="-1" class="inputs-title">${label("weather")}</h2>
+      ${rowsOf(app, forms, "weather", { name: dayName, add: () => addDay(app, forms), copy: (index) => copyDay(app, index) })}
+      ${form(app, forms, { ...cure, label: "Weather" }, "/cure", { only: isWeather })}
+    </section>
+    <section aria-labelledby="room-title" data-group="room">
+      <h2 id="room-title" tabindex="-1" class="inputs-title">${label("room")}</h2>
+      ${form(app, forms, groupOf(forms, "room"), "/cure/room")}
+    </section>
+    <section aria-labelledby="settings-title" data-group="cure">
+      <h2 id="settings-title" tabindex="-1" class="inputs-title">Settings</h2>
+      ${form(app, forms, cure, "/cure", { only: (section) => !isWeather(section) })}
+    </section>
+    ${(["cut", "two_part"] as const).map(
+      (key) => html`<section aria-labelledby="${key}-title" data-group=${key}>
+        <h2 id="${key}-title" tabindex="-1" class="inputs-title">${label(key)}</h2>
+        ${rowsOf(app, forms, key, { name: (row, index) => sealantName(app, row) ?? `${label(key)} ${index + 1}`, add: () => addPlain(app, forms, key), copy: (index, name) => void duplicateRow(app, listOf(forms, key), index, `Copied ${name}`) })}
+      </section>`,
+    )}
+  </div>`;
+}
+
+interface RowWays {
+  name: (row: Row, index: number) => string | TemplateResult;
+  add: () => void;
+  copy: (index: number, name: string) => void;
+}
+
+/** The list that a group of rows stands in: `cure.sealed[]` -> `/cure/sealed`. */
+function listOf(forms: Forms, key: string): string {
+  return `/${groupOf(forms, key).path.replace("[]", "").replaceAll(".", "/")}`;
+}
+
+/** Rows behind their names, each with its fields when it is opened. */
+function rowsOf(app: App, forms: Forms, key: string, ways: RowWays): TemplateResult {
+  const group = groupOf(forms, key);
+  const list = listOf(forms, key);
+  const mayEdit = app.open.readOnly === null;
+  const issues = app.state.result?.evaluation.issues ?? [];
+  return html`<div class="row-drawers is-${key}">
+      ${repeat(
+        getRows(app.job, list),
+        (row, index) => String(row["id"] ?? index),
+        (row, index) => {
+          const base = `${list}/${index}`;
+          const isFaulty = issues.some((issue) => issue.severity === "error" && issue.path.startsWith(`${base}/`));
+          const spoken = rowNameOf(row, group.label, index);
+          return html`<div data-testid="${key}-${index}">
+            ${disclosure(
+              app,
+              partOf(list, index),
+              html`${ways.name(row, index)}${isFaulty ? html` <span class="count">to fix</span>` : nothing}`,
+              () => html`${form(app, forms, group, base, { level: 4 })}
+                ${mayEdit
+                  ? html`<div class="actions">
+                      <button type="button" data-testid="copy-${key}-${index}" @click=${() => ways.copy(index, spoken)}>Copy</button>
+                      <button type="button" data-testid="remove-${key}-${index}" @click=${() => removeRow(app, list, index, `Removed ${spoken}`)}>Remove</button>
+                    </div>`
+                  : nothing}`,
+            )}
+          </div>`;
+        },
+      )}
+    </div>
+    ${mayEdit ? html`<div class="actions"><button type="button" data-testid="add-${key}" @click=${ways.add}>${ADD_WORDS[key] ?? "Add"}</button></div>` : nothing}`;
+}
+
+/** Name of the drawer of a row; a fault that is jumped to opens it (see ui/issues.ts). */
+function partOf(list: string, index: number | string): string {
+  return `row ${list} ${index}`;
+}
+
+function runName(row: Row, index: number, word: string, answer: CureAnswer): TemplateResult {
+  const through = answer.runs?.[String(row["id"])]?.headline?.through;
+  return html`<span class="row-name">${rowNameOf(row, word, index)}</span>${through ? html`<span class="row-sub">${through}</span>` : nothing}`;
+}
+
+function dayName(row: Row, index: number): string {
+  const text = (key: string): string => (typeof row[key] === "string" ? (row[key] as string).trim() : "");
+  const air = [text("least"), text("most")].filter(Boolean).join(" / ");
+  return [[text("day") || `${index + 1}`, text("time")].filter(Boolean).join(" "), air, text("humidity") || text("dew")].filter(Boolean).join(" · ");
+}
+
+function sealantName(app: App, row: Row): string | null {
+  const rows = getRows(app.job, "/sealants");
+  const index = rows.findIndex((sealant) => sealant["id"] === row["sealant"]);
+  return index < 0 ? null : rowNameOf(rows[index]!, "Sealant", index);
+}
+
+function addRun(app: App, forms: Forms): void {
+  const joints = getRows(app.job, "/joints");
+  const only = joints.length === 1 ? { joint: joints[0]!["id"] } : {};
+  const name = `${groupOf(forms, "sealed").label} ${getRows(app.job, "/cure/sealed").length + 1}`;
+  addTo(app, forms, "sealed", { name, ...only }, "name");
+}
+
+function addDay(app: App, forms: Forms): void {
+  addTo(app, forms, "weather", { day: nextDay(app) }, "least");
+}
+
+function addPlain(app: App, forms: Forms, key: string): void {
+  addTo(app, forms, key, {}, "sealant");
+}
+
+function addTo(app: App, forms: Forms, key: string, more: Row, first: string): void {
+  const list = listOf(forms, key);
+  const index = getRows(app.job, list).length;
+  addRow(app, list, { id: newId(), ...blankRow(forms, key, systemOf(app.job)), ...more }, `Added: ${groupOf(forms, key).label.toLowerCase()}`);
+  openParts(app, [partOf(list, index)]);
+  focusSoon(fieldId(`${list}/${index}/${first}`));
+}
+
+/** A like day after the last one, as a forecast is typed. */
+function copyDay(app: App, index: number): void {
+  const list = "/cure/weather";
+  const at = getRows(app.job, list).length;
+  appendCopy(app, list, index, { day: nextDay(app) }, "Copied a day");
+  openParts(app, [partOf(list, at)]);
+  focusSoon(fieldId(`${list}/${at}/least`));
+}
+
+function nextDay(app: App): string {
+  const last = getRows(app.job, "/cure/weather").at(-1);
+  const typed = String(get(last, "/day") ?? "");
+  const day = new Date(`${typed}T00:00:00Z`);
+  if (Number.isNaN(day.getTime())) return today();
+  day.setUTCDate(day.getUTCDate() + 1);
+  return day.toISOString().slice(0, 10);
+}
