@@ -67,7 +67,7 @@ for (const [name, data] of files) {
   sizes.push({ name, bytes: data.length, gz: made.gz?.length ?? data.length, br: made.br?.length ?? made.gz?.length ?? data.length });
 }
 
-const later = (name) => name.startsWith("snapshot/") || /\/(numpy|openpyxl|et_xmlfile)-/.test(name);
+const later = (name) => name.startsWith("snapshot/") || /\/(numpy|openpyxl|et_xmlfile|tzdata)-/.test(name);
 const sum = (list) => list.reduce((total, item) => ({ bytes: total.bytes + item.bytes, gz: total.gz + item.gz, br: total.br + item.br }), { bytes: 0, gz: 0, br: 0 });
 const report = { version: worker.version, before_first_verdict: sum(sizes.filter((item) => !later(item.name))), all: sum(sizes), files: sizes.sort((a, b) => b.br - a.br) };
 write(join(out, "sizes.json"), `${JSON.stringify(report, null, 1)}\n`);

@@ -94,9 +94,9 @@ function pureWheels(python) {
 
 const DEPENDS = { pint: ["flexcache", "flexparser", "platformdirs", "typing-extensions"], cattrs: ["attrs", "typing-extensions"], flexparser: ["typing-extensions"], flexcache: ["typing-extensions"], openpyxl: ["et-xmlfile"] };
 const IMPORTS = { attrs: ["attr", "attrs"], "typing-extensions": ["typing_extensions"], "et-xmlfile": ["et_xmlfile"] };
-const FROM_CORE = { pint: /^\s*(import|from) pint\b/m, attrs: /^\s*(import|from) attrs?\b/m, cattrs: /^\s*(import|from) cattrs\b/m, openpyxl: /^\s*(import|from) openpyxl\b/m };
+const FROM_CORE = { pint: /^\s*(import|from) pint\b/m, attrs: /^\s*(import|from) attrs?\b/m, cattrs: /^\s*(import|from) cattrs\b/m, openpyxl: /^\s*(import|from) openpyxl\b/m, tzdata: /^\s*(import|from) zoneinfo\b/m };
 // Loaded by the worker when first needed (bridge.py names them): no start waits for these, and no snapshot holds them.
-const LATE = ["numpy", "openpyxl", "et-xmlfile"];
+const LATE = ["numpy", "openpyxl", "et-xmlfile", "tzdata"];
 
 /** Only what the core imports travels to the browser, with what that needs in turn. */
 function neededBy(sources) {

@@ -17,14 +17,16 @@ import traceback
 from typing import Any
 
 from beadwright import desk
+from beadwright.curing import clock
 
 METHODS = (
     "forms", "evaluate", "export", "frames", "open_file", "blank", "blank_row", "compare", "merge",
     "paste_runs", "compare_takeoff",
 )
 _BYTES = "$bytes"
-# Packages that only some exports need: the worker brings them before it asks.
-_LATE = {"takeoff-xlsx": ("openpyxl",)}
+# Packages that only some calls need: the worker brings them before it asks.
+_LATE = {"takeoff-xlsx": ("openpyxl",), "calendar": ("tzdata",), "cure-sheet": ("tzdata",), "text": ("tzdata",)}
+_CURE_ONLY = '["cure"]]'  # how the parameters of `evaluate` end when the page of the cure asks
 
 
 def _arriving(value: Any) -> Any:
@@ -62,11 +64,23 @@ def _fault(error: BaseException) -> dict[str, Any]:
 
 def wanted(method: str, params_text: str) -> str:
     """The packages that this call needs and that are not there yet, between blanks."""
-    if method != "export":
-        return ""
-    params = json.loads(params_text)
-    names = _LATE.get(str(params[1]), ()) if len(params) > 1 else ()
-    return " ".join(name for name in names if importlib.util.find_spec(name) is None)
+    names: tuple[str, ...] = ()
+    if method == "evaluate" and params_text.endswith(_CURE_ONLY):
+        names = ("tzdata",)
+    elif method == "export":
+        params = json.loads(params_text)
+        names = _LATE.get(str(params[1]), ()) if len(params) > 1 else ()
+    missing = [name for name in names if importlib.util.find_spec(name) is None]
+    if "tzdata" in missing:
+        _forget_zones()
+    return " ".join(missing)
+
+
+def _forget_zones() -> None:
+    """What was answered without the rules of time zones must not outlive their coming."""
+    clock.zone_rules.cache_clear()
+    clock.has_rules.cache_clear()
+    desk._cure_part.cache_clear()
 
 
 def call(method: str, params_text: str) -> str:
