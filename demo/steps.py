@@ -170,6 +170,18 @@ def find_or_install_browser() -> str | None:
     return None
 
 
+def install_libreoffice() -> None:
+    """LibreOffice Calc without a window, for the test that recomputes a workbook; without it that test is skipped."""
+    if shutil.which("soffice") or not (sys.platform == "linux" and shutil.which("apt-get") and os.geteuid() == 0):
+        return
+    say("no LibreOffice found: installing the package libreoffice-calc-nogui with apt-get")
+    quiet = {**os.environ, "DEBIAN_FRONTEND": "noninteractive"}
+    subprocess.run(["apt-get", "update", "-qq"], env=quiet, capture_output=True)
+    done = subprocess.run(["apt-get", "install", "-y", "-qq", "--no-install-recommends", "libreoffice-calc-nogui"], env=quiet, capture_output=True, text=True)
+    if done.returncode != 0:
+        say("LibreOffice could not be installed; its test is skipped")
+
+
 class Clock:
     """Says how long a step took when that is worth saying."""
 

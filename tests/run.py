@@ -54,6 +54,8 @@ def main() -> int:
     steps.install_test_packages()
     steps.npm_ci()
     browser = None if "--fast" in asked else steps.find_or_install_browser()
+    if "--fast" not in asked:
+        steps.install_libreoffice()
     if browser:
         os.environ["BEADWRIGHT_CHROMIUM"] = browser
     steps.build()
