@@ -90,7 +90,7 @@ function rowLine(app: App, forms: Forms, group: FieldGroup, data: RowList, row: 
   const isBad = found.some(({ issue }) => issue.severity === "error");
   const text = data.textOf?.(base) ?? null;
   const id = "part-" + part.replaceAll(/[^\w]+/g, "-");
-  return html`<li class="row-item ${isBad ? "is-bad" : ""}" data-testid="row-${data.group}-${index}">
+  return html`<li class="row-item ${isBad ? "has-fault" : ""}" data-testid="row-${data.group}-${index}">
     <div class="row-line">
       <span class="row-number">${index + 1}</span>
       ${data.columns.map((keys, column) => cell(app, forms, group, data, base, index, keys, column, { name, isOpen }))}
@@ -98,7 +98,7 @@ function rowLine(app: App, forms: Forms, group: FieldGroup, data: RowList, row: 
         <span class="disclose-sign" aria-hidden="true"></span>
       </button>
     </div>
-    ${text ? html`<p class="row-text">${text}</p>` : nothing}
+    ${text && !isBad ? html`<p class="row-text">${text}</p>` : nothing}
     ${isOpen ? nothing : found.map(({ spec, issue }, at) => message(`${cellId(base)}-message-${at}`, issue, spec.label))}
     <div id=${id} class="row-form" ?hidden=${!isOpen}>${isOpen ? html`${form(app, forms, group, base, { level: 4 })}${actions(app, forms, group, data, index, total, name)}` : nothing}</div>
   </li>`;
