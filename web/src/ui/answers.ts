@@ -53,6 +53,8 @@ export function bands(answers: Answer[]): TemplateResult {
 const ROW_WORDS: Record<string, string> = { chosen: "in force", bad: "not enough", total: "" };
 /** Longer cells may break; a figure with its unit may not. */
 const WHOLE_LETTERS = 12;
+/** So long that a narrow column would break it into a ladder. */
+const LONG_LETTERS = 24;
 
 export function table(data: AnswerTable, withTitle = true): TemplateResult {
   return html`<div class="table-wrap" role="region" tabindex="0" aria-label=${data.title} data-testid="table-${data.key}">
@@ -74,7 +76,7 @@ export function table(data: AnswerTable, withTitle = true): TemplateResult {
 }
 
 function cellOf(cell: string, at: number, align: string | undefined, rowMark: string | null | undefined): TemplateResult {
-  const look = `${align === "right" ? "right" : ""} ${cell.length <= WHOLE_LETTERS ? "whole" : ""}`;
+  const look = `${align === "right" ? "right" : ""} ${cell.length <= WHOLE_LETTERS ? "whole" : cell.length > LONG_LETTERS ? "long" : ""}`;
   if (at > 0) return html`<td class=${look}>${cell}</td>`;
   // The weight of the row says it to the eye; to others a word does.
   const word = rowMark ? (ROW_WORDS[rowMark] ?? rowMark) : "";
@@ -168,8 +170,13 @@ function jointsOf(app: App, item: Caution): TemplateResult | typeof nothing {
 /** How far the core is, in place of answers that are not there yet. */
 export function waiting(app: App): TemplateResult {
   const { core, coreFault } = app.state;
-  if (coreFault !== null) return html`<p class="waiting is-bad" data-testid="core-fault"><b>Stopped:</b> ${coreFault}</p>`;
-  if (core.phase === "failed") return html`<p class="waiting is-bad"><b>Stopped:</b> ${core.text}</p>`;
+  if (coreFault !== null && core.phase === "ready") return html`<p class="waiting is-bad" data-testid="core-fault"><b>Stopped:</b> ${coreFault}</p>`;
+  if (core.phase === "failed") {
+    return html`<div class="waiting is-bad" data-testid="core-failed">
+      <p><b>Stopped:</b> ${core.text}. What you type is kept all the same.</p>
+      <div class="actions"><button type="button" data-testid="core-again" @click=${() => app.core.start()}>Start it again</button></div>
+    </div>`;
+  }
   if (core.phase === "ready") return html`<p class="waiting">Working…</p>`;
   return html`<p class="waiting">Working starts when ready. ${core.text}</p>`;
 }
