@@ -262,6 +262,8 @@ FACES = [
     ({"surface": "2 degC"}, "stop"),
     ({"width": "4 mm"}, "stop"),
     ({"day_swing": "100 K"}, "wait"),
+    ({"wetness": None}, "unknown"),
+    ({"day_swing": None}, "seal"),
     ({"surface": None}, "unknown"),
     ({"humidity": None}, "unknown"),
     ({"width": None}, "unknown"),

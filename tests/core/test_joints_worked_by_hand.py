@@ -139,7 +139,7 @@ def test_inch_joint():
 def test_reading_at_the_face_of_two_unlike_sides():
     """18 mm found with A at 12 and B at 20 degC: each side goes on from its own temperature."""
     a, b = {"length": "6 m", "winter_surface": "-10 degC", "summer_surface": "60 degC"}, {"length": "2 m", "expansion": "24 e-6/K", "winter_surface": "0 degC", "summer_surface": "40 degC"}
-    face = only_joint(make_job({"side_a": a, "side_b": b, "face": {"width": "18 mm", "width_least": "16 mm", "surface": "12 degC", "surface_b": "20 degC", "day_swing": "15 K", "air": "14 degC", "humidity": "60 %"}}))["face"]
+    face = only_joint(make_job({"side_a": a, "side_b": b, "face": {"width": "18 mm", "width_least": "16 mm", "surface": "12 degC", "surface_b": "20 degC", "day_swing": "15 K", "air": "14 degC", "humidity": "60 %", "wetness": "dry"}}))["face"]
     ra, rb = 10e-6 * 3000, 24e-6 * 1000
     opening, closing = ra * 22 + rb * 20, ra * 48 + rb * 20
     assert face["cold_width_mm"] == near(18 + opening) and face["hot_width_mm"] == near(18 - closing)

@@ -179,6 +179,15 @@ def _read_sealants(raw: object, reads: Reads, tables: Tables) -> Iterator[Sealan
         yield evolve(sealant, has_errors=_error_count(reads) > before)
 
 
+def apply_range(sealant: Sealant) -> tuple[float | None, float | None]:
+    """Temperatures between which the sealant may be applied: its data sheet, else what its family usually allows. [degC]"""
+    low, high, family = sealant.values["apply_from"], sealant.values["apply_to"], sealant.family
+    if family is not None:
+        low = family.apply_low_c if low is None else low
+        high = family.apply_high_c if high is None else high
+    return low, high
+
+
 def _has_issue(reads: Reads, path: str) -> bool:
     return path in reads.places
 
@@ -264,5 +273,10 @@ def _require(values: Mapping[str, Any], sides: list[dict[str, Any]], path: str, 
         if substrate is not None and finish is not None and finish not in {item.id for item in substrate.finishes}:
             reads.add(Issue(f"{path}/{key}/finish", "not-a-choice", "error", f"{label}: this colour is not one of {substrate.label}; choose again.", value=finish))
             side["finish"] = None
+        hot, cold = side["summer_surface"], side["winter_surface"]
+        if hot is not None and cold is not None and hot < cold:
+            unit = "degF" if reads.system == INCH else "degC"
+            reads.add(Issue(f"{path}/{key}/summer_surface", "contradiction", "error",
+                            f"{label}: its hottest ({show(hot, 'temperature', unit)}) is colder than its coldest ({show(cold, 'temperature', unit)}).", value=hot, limit=cold, unit="degC"))  # fmt: skip
         if side["fixity"] == "share" and side["moving_share"] is None and not _has_issue(reads, f"{path}/{key}/moving_share"):
             reads.add(Issue(f"{path}/{key}/moving_share", "missing", "error", f"{label}: the share that moves here is not given yet."))

@@ -8,7 +8,7 @@ from typing import Any
 from attrs import frozen
 
 from ..design import backing, depth, width, window
-from ..design.inputs import Project
+from ..design.inputs import Project, apply_range
 from ..design.joint import REFERRED, UNKNOWN, Judgement
 from ..physics import humidity, strain
 from ..working import COMMON_PRACTICE, DEFINITION, MEMORY, READ, Step, Value
@@ -43,6 +43,7 @@ class FaceAnswer:
     hot_width_mm: float | None = None
     cold_strain_fraction: float | None = None
     hot_strain_fraction: float | None = None
+    narrow_strain_fractions: tuple[float, float] | None = None
     reference_c: float | None = None
     reference_width_mm: float | None = None
     dew_point_c: float | None = None
@@ -102,21 +103,18 @@ def _verdict(checks: list[Check]) -> str:
         return STOP
     if WAIT in failed:
         return WAIT
-    return UNKNOWN if any(check.passed is None for check in checks) else SEAL
+    # How far the surface will swing is a forecast, not a reading; without one the rest still stands, and says so.
+    return UNKNOWN if any(check.passed is None and not (check.key == "green" and check.limit) for check in checks) else SEAL
 
 
 def _wetness(word: str | None) -> Check:
-    return Check("wetness", word in (None, "dry"), STOP if word in ("wet", "frost") else WAIT, None, None)
+    return Check("wetness", None if word is None else word == "dry", STOP if word in ("wet", "frost") else WAIT, None, None)
 
 
 def _temperature_checks(judged: Judgement, temperatures: tuple[float, float] | None) -> list[Check]:
     sealant = judged.sealant
     assert sealant is not None
-    family = sealant.family
-    low = sealant.values["apply_from"]
-    high = sealant.values["apply_to"]
-    low = family.apply_low_c if low is None and family is not None else low
-    high = family.apply_high_c if high is None and family is not None else high
+    low, high = apply_range(sealant)
     if temperatures is None:
         return [Check("frost", None, STOP, None, Value(FREEZING_C, "temperature")), Check("range", None, WAIT, None, None)]
     coldest, warmest = min(temperatures), max(temperatures)
@@ -180,6 +178,7 @@ def _at_width(judged: Judgement, project: Project, mean: float, least: float, mo
     change = sum(item.rate_mm_per_k * (reference - at) for item, at in zip(movement.elements, temperatures, strict=True))
     answer |= {
         "cold_width_mm": cold, "hot_width_mm": hot, "cold_strain_fraction": opened, "hot_strain_fraction": closed,
+        "narrow_strain_fractions": (strain.stretch_fraction(least, -min(closing, 0.999 * least), 0.0), strain.stretch_fraction(least, opening, shear)) if least < mean and not lap else None,
         "slip_mm": shear if lap else None, "reference_c": reference, "reference_width_mm": None if lap else mean - change,
     }  # fmt: skip
     now, rate = Value(mean, "length"), Value(movement.rate_mm_per_k, "rate")
@@ -207,10 +206,8 @@ def _limits(widths: Any, least: float, most: float, checks: list[Check]) -> None
 
 def _green(movement: Any, project: Project, least: float, face: Mapping[str, Any], checks: list[Check], steps: list[Step], answer: dict[str, Any]) -> None:
     swing, limit = face["day_swing"], project.site["green_limit"]
-    if swing is None:
-        return
-    if limit is None:
-        checks.append(Check("green", None, WAIT, None, None))
+    if swing is None or limit is None:
+        checks.append(Check("green", None, WAIT, None, None if limit is None else Value(limit, "percent")))
         return
     # The narrowest place works the bead hardest.
     share = movement.rate_mm_per_k * swing / least

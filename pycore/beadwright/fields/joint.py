@@ -87,7 +87,7 @@ SIDE = Group(
                   Choice("shaded", "Always shaded or indoors"),
               )),
         span_field("length", "Length of the element", symbol="L", required=True, section="Movement", above=True, hard_min=0.0, hard_max=200000.0,
-              soft_max=60000.0, soft_reason="An element this long usually has a movement joint in it."),
+              soft_min=50.0, soft_max=60000.0, soft_reason="Elements beside a joint are seldom outside this range; check the unit."),
         Field("fixity", "Held at", "choice", default="middle", section="Movement",
               choices=(
                   Choice("middle", "Its middle: half moves here"),
@@ -155,7 +155,7 @@ FACE = Group(
         temperature_field("air", "Air now", section="Air", **AIR),
         percent_field("humidity", "Relative humidity", section="Air", hard_min=0.0, hard_max=1.0, soft_min=0.05,
                  soft_reason="So dry a reading is rare outdoors; check the instrument.", example="65 %"),
-        Field("wetness", "Bond faces are", "choice", default="dry", section="Air",
+        Field("wetness", "Bond faces are", "choice", section="Air",
               choices=(Choice("dry", "Dry"), Choice("damp", "Damp to the touch"), Choice("wet", "Wet"), Choice("frost", "Frosted"))),
         Field("day_swing", "Surface will swing by", "temperature_difference", units=DIFFERENCE, section="While it cures",
               hard_min=0.0, hard_max=110.0, example={METRIC: "18 K", INCH: "32 °F"},

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from typing import Any
 
 from ..design.backing import Backing
-from ..design.joint import Judgement
+from ..design.joint import UNKNOWN, Judgement
 from ..field.face import SEAL, STOP, WAIT, Check, FaceAnswer
+from ..fields import FACE
 from ..working import Value
 from . import writing
 
@@ -16,15 +18,15 @@ _TONES = {SEAL: "ok", WAIT: "warn", STOP: "bad", "unknown": "plain", "referred":
 # key: label, what is said when passed, failed, not told.
 _CHECKS: dict[str, tuple[str, str, str, str]] = {
     "wetness": ("Bond faces", "Dry.", "Not dry: free water, damp or frost at the face breaks the bond.", ""),
-    "frost": ("Above freezing", "Above freezing.", "At or below freezing: ice may be there unseen. Warm and dry the joint first.", "Needs the surface temperature."),
-    "range": ("Sealant's range", "", "", "Needs the surface temperature."),
+    "frost": ("Above freezing", "Above freezing.", "At or below freezing: ice may be there unseen. Warm and dry the joint first.", ""),
+    "range": ("Sealant's range", "", "", ""),
     "apply-from": ("Warm enough for the sealant", "Warm enough.", "Colder than the sealant may be applied.", ""),
     "apply-to": ("Cool enough for the sealant", "Cool enough.", "Hotter than the sealant may be applied: wait for shade.", ""),
-    "dew": ("Surface over dew point", "Dry enough: no dew will form.", "Too close to the dew point: moisture forms on the face.", "Needs air temperature, humidity, surface and the margin set for the site."),
-    "class": ("Share of the width needed", "Stays within class all year.", "Sealed now, it would go beyond its class within the year.", "Needs the width and the surface temperature."),
+    "dew": ("Surface over dew point", "Dry enough: no dew will form.", "Closer to the dew point than the margin wanted: dew may form on the face.", ""),
+    "class": ("Share of the width needed", "Stays within class all year.", "Sealed now, it would go beyond its class within the year.", ""),
     "width-least": ("Not too narrow", "Wide enough to seal.", "Narrower than is practical to seal.", ""),
     "width-most": ("Not too wide", "Narrow enough to seal.", "Wider than is practical to seal.", ""),
-    "green": ("Movement while green", "Little enough movement while it cures.", "It would move too much while it cures: seal later in the day, in shade, or on a cloudy day.", "Needs the limit set for the site."),
+    "green": ("Movement while green", "Little enough movement while it cures.", "It would move too much while it cures: seal later in the day, in shade, or on a cloudy day.", "Not told: how far the surface will swing while the bead is green."),
 }  # fmt: skip
 
 
@@ -38,7 +40,7 @@ def face_dict(answer: FaceAnswer | None, judged: Judgement, system: str) -> dict
         "verdict_text": _reason(answer, judged),
         "tone": _TONES[answer.verdict],
         "answers": _bands(answer, system),
-        "checks": [_check(check, system) for check in answer.checks],
+        "checks": [_check(check, system) for check in sorted(answer.checks, key=_urgency)],
         "steps": [writing.step_lines(step, system) for step in answer.steps],
     }
     for key in ("width_mm", "cold_width_mm", "hot_width_mm", "cold_strain_fraction", "hot_strain_fraction", "reference_c", "reference_width_mm", "dew_point_c", "green_fraction"):
@@ -57,8 +59,26 @@ def _reason(answer: FaceAnswer, judged: Judgement) -> str:
     failed = [_CHECKS[check.key][2] for check in answer.checks if check.passed is False]
     if failed:
         return " ".join(failed)
-    missing = list(dict.fromkeys(_CHECKS[check.key][3] for check in answer.checks if check.passed is None))
-    return " ".join(missing) if missing else "Every gate is passed at these readings. Check again when the weather turns."
+    if answer.verdict == UNKNOWN:
+        missing = _missing(judged.joint.face)
+        return f"Still needed: {', '.join(missing)}." if missing else "A setting of the site that this needs cannot be read; see the job."
+    if any(check.passed is None for check in answer.checks):
+        return "Every gate that could be judged is passed. How far the bead moves while green is not known: give the swing to have it judged."
+    return "Every gate is passed at these readings. Check again when the weather turns."
+
+
+def _missing(face: Mapping[str, Any]) -> list[str]:
+    """The readings that the verdict still waits for, by their labels."""
+    wanted = [key for key in ("surface", "air", "humidity", "wetness") if face[key] is None]
+    if all(face[key] is None for key in ("width", "width_least", "width_most")):
+        wanted.insert(0, "width")
+    labels = {"wetness": "whether the bond faces are dry"}
+    return [labels.get(key, FACE[key].label[0].lower() + FACE[key].label[1:]) for key in wanted]
+
+
+def _urgency(check: Check) -> int:
+    """What fails stands first, then what is not told; the rest keeps its order."""
+    return 2 if check.passed else 1 if check.passed is None else 0
 
 
 def _check(check: Check, system: str) -> dict[str, Any]:
@@ -89,7 +109,7 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
         add("extremes", "How far will it go?", f"Slips {writing.up(answer.slip_mm, system)}", f"From the temperature now; the bead stretches by {writing.percent(answer.cold_strain_fraction)}.")
     elif answer.cold_width_mm is not None and answer.hot_width_mm is not None and answer.cold_strain_fraction is not None and answer.hot_strain_fraction is not None:
         add("extremes", "How far will it go?", f"{writing.length(answer.hot_width_mm, system)} to {writing.length(answer.cold_width_mm, system)}",
-            f"Hottest to coldest; strain {writing.percent(answer.hot_strain_fraction, signed=True)} to {writing.percent(answer.cold_strain_fraction, signed=True)}.")  # fmt: skip
+            f"Hottest to coldest; strain {writing.percent(answer.hot_strain_fraction, signed=True)} to {writing.percent(answer.cold_strain_fraction, signed=True)}.{_narrow(answer, system)}")  # fmt: skip
     if answer.window is not None:
         if answer.window.is_empty or answer.window.from_c is None or answer.window.to_c is None:
             add("window", "At which temperature?", "At none", answer.window.advice, "bad")
@@ -106,6 +126,14 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
     if answer.green_fraction is not None:
         add("green", "Movement while green?", writing.percent(answer.green_fraction), "Of the narrowest width, over the swing entered. A rough guide: how far a green bead may move depends on the sealant.")
     return bands
+
+
+def _narrow(answer: FaceAnswer, system: str) -> str:
+    """What the narrowest place takes, which is where the class is judged."""
+    if answer.narrow_strain_fractions is None or answer.least_mm is None:
+        return ""
+    hot, cold = answer.narrow_strain_fractions
+    return f" At the narrowest, {writing.down(answer.least_mm, system)}, where the class is judged: {writing.percent(hot, signed=True)} to {writing.percent(cold, signed=True)}."
 
 
 def _rod_detail(rod: Backing, system: str) -> str:

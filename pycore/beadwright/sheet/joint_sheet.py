@@ -6,7 +6,8 @@ from collections.abc import Sequence
 from typing import Any
 
 from ..design import depth as depths
-from ..design.bead import strained
+from ..design.bead import StrainState, strained
+from ..design.inputs import apply_range
 from ..design.joint import AT_LIMIT, BEYOND, REFERRED, UNKNOWN, WITHIN, Judgement
 from ..design.width import EACH_WAY, TOTAL_SWING
 from ..field.face import FaceAnswer
@@ -84,7 +85,7 @@ def verdict_text(judged: Judgement, system: str) -> str:
     if judged.reason == "practical-least":
         return f"The width is below {writing.length(widths.practical_least_mm, system)}, the least that is practical ({widths.practical_least_name})."
     if widths.present_mm is None:
-        return f"No width is entered. {writing.length(widths.design_mm, system)} would keep the joint within {judged.sealant.class_label}; {governs} governs."
+        return f"No width is entered. {writing.length(widths.design_mm, system)} would keep the joint within {judged.sealant.class_label}{_sealed_within(judged, system)}; {governs} governs."
     tail = "" if widths.judged_mm == widths.present_mm else " once the tolerance is off"
     used = writing.percent_up(widths.use_fraction) if widths.use_fraction < 100 else "far more than all"
     if judged.verdict == BEYOND:
@@ -93,13 +94,34 @@ def verdict_text(judged: Judgement, system: str) -> str:
         said = f"{used} of {judged.sealant.class_label} would be used" if linear else f"{used} of it would be needed for {judged.sealant.class_label}"
         return f"Needs {need}, has {have}{tail}: {said}; {governs} governs.{_way_out(judged, system)}"
     said = f"{used} of {judged.sealant.class_label} is used" if linear else f"{used} of it is needed for {judged.sealant.class_label}"
-    return f"Needs {need}, has {have}{tail}: {said}; {governs} governs."
+    return f"Needs {need}, has {have}{tail}: {said}{_sealed_within(judged, system)}; {governs} governs."
+
+
+def _sealed_within(judged: Judgement, system: str) -> str:
+    """The sealing temperatures that the verdict takes for granted."""
+    movement = judged.movement
+    if movement is None or movement.total_swing or (movement.seal_from_c is None and movement.seal_to_c is None):
+        return ""
+    if movement.seal_from_c is None:
+        return f" if sealed not above {writing.temperature(movement.seal_to_c or 0.0, system)}"
+    if movement.seal_to_c is None:
+        return f" if sealed not below {writing.temperature(movement.seal_from_c, system)}"
+    return f" if sealed between {writing.temperature(movement.seal_from_c, system)} and {writing.temperature(movement.seal_to_c, system)}"
+
+
+def _is_workable(judged: Judgement) -> bool:
+    """Whether the sealant may be applied at any temperature of the sealing window."""
+    window, sealant = judged.window, judged.sealant
+    if window is None or sealant is None or window.from_c is None or window.to_c is None:
+        return False
+    low, high = apply_range(sealant)
+    return (high is None or window.from_c <= high) and (low is None or window.to_c >= low)
 
 
 def _way_out(judged: Judgement, system: str) -> str:
     """What sealing at the right temperature alone would mend, where it would."""
     window = judged.window
-    if window is None or window.is_empty or judged.capability is None or judged.capability.convention == TOTAL_SWING:
+    if window is None or window.is_empty or judged.capability is None or judged.capability.convention == TOTAL_SWING or not _is_workable(judged):
         return ""
     return f" It would hold if sealed {_window_words(judged, system)[0].lower()}{_window_words(judged, system)[1:]}."
 
@@ -274,6 +296,8 @@ def _window_band(judged: Judgement, system: str) -> Band:
     if window.is_empty or window.from_c is None or window.to_c is None:
         return _band("window", "When may it be sealed?", "At no temperature", f"{window.advice} Judged at {basis}.", "bad")
     words = _window_words(judged, system)
+    if not _is_workable(judged):
+        return _band("window", "When may it be sealed?", "At no workable temperature", f"Movement would allow it {words[0].lower()}{words[1:]} only, where this sealant may not be applied: a wider joint, a higher class or shorter elements. Judged at {basis}.", "bad")
     if window.low_limited_by == window.high_limited_by == "element":
         return _band("window", "When may it be sealed?", words, f"As far as movement goes, at {basis}; the sealant and the weather set their own limits.", "ok")
     why = []
@@ -314,8 +338,16 @@ def _strain_band(judged: Judgement, system: str) -> Band:
     assert cold is not None and hot is not None and bead is not None
     return _band(
         "strain", "How hard is the bead worked?", f"{writing.percent(cold.average_fraction, signed=True)} cold, {writing.percent(hot.average_fraction, signed=True)} hot",
-        f"Average across a bead {writing.length(bead.width_mm, system)} wide, sealed at the worst temperature for each. At its free face: {writing.percent(cold.face_fraction, signed=True)} at the coldest, {writing.percent(hot.face_fraction, signed=True)} at the hottest.",
+        f"Average across a bead {writing.length(bead.width_mm, system)} wide, sealed at the worst temperature for each. {_at_free_face(cold, hot)}",
     )  # fmt: skip
+
+
+def _at_free_face(cold: StrainState, hot: StrainState) -> str:
+    """Strain of the free face; squeezed by more than half, the bead bulges out and its face says nothing of the bond."""
+    said = f"At its free face: {writing.percent(cold.face_fraction, signed=True)} at the coldest"
+    if hot.average_fraction < -0.5:
+        return f"{said}; at the hottest it is squeezed by more than half and bulges out."
+    return f"{said}, {writing.percent(hot.face_fraction, signed=True)} at the hottest."
 
 
 def _section_band(judged: Judgement, system: str, *, lap: bool) -> Band:
@@ -370,6 +402,8 @@ def _class_table(judged: Judgement, system: str) -> dict[str, Any]:
         holds = "–" if row.holds_present is None else "holds" if row.holds_present else "does not hold"
         rows.append({"cells": [row.row.label, writing.up(row.required_mm, system), writing.length(row.design_mm, system), holds], "mark": "chosen" if row.row.id == sealant.class_id else None})
     other = f" Under the other convention ({CONVENTION_WORDS[widths.other_convention]}) {sealant.class_label} would ask for {writing.up(widths.other_required_mm, system)}." if widths.other_required_mm is not None else ""
+    if widths.other_required_mm is not None and abs(widths.other_required_mm - widths.required_mm) < 0.05:
+        other += " That is the same here, since with no limit on the sealing temperature the whole range counts each way."
     return _table("classes", "Width at each class", ("Class", "Movement asks", "Design width", "At this width"), rows,
                   f"Convention: {CONVENTION_WORDS[judged.capability.convention]}. Classes of different conventions are never turned into each other.{other}")  # fmt: skip
 
