@@ -48,6 +48,7 @@ function firstState({ core, offline }: Neighbours): State {
     bin: null,
     quarantine: null,
     revisions: null,
+    setAside: [],
     open: null,
     openFault: null,
     pending: null,

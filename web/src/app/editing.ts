@@ -9,9 +9,20 @@ import { get, getRows, set } from "./pointer";
 import { NO_HISTORY, NO_TAKEOFF } from "./state";
 import { askForAnswer } from "./working";
 
+/** An offer of unsaved typing that is passed over is put with the kept copies: new work neither loses it nor is lost to it. */
+function passOverDraft(app: App): void {
+  if (app.open.draft === null) return;
+  app.updateOpen({ draft: null });
+  app.store
+    .discardDraft(app.open.id, true)
+    .then(() => app.say("What was typed before and not saved is kept under Earlier copies."))
+    .catch((error: unknown) => app.say(messageOf(error), "bad"));
+}
+
 /** While typing: the text stays exactly as it is typed. */
 export function typeInto(app: App, pointer: string, text: string, unit: string | null): void {
   if (app.open.readOnly !== null) return;
+  passOverDraft(app);
   const isOther = app.state.pending !== null && app.state.pending.pointer !== pointer;
   if (isOther) commitPending(app, "Edit");
   replaceJob(app, set(app.job, pointer, text));
@@ -41,6 +52,7 @@ export function choose(app: App, pointer: string, value: unknown, label: string)
   if (app.open.readOnly !== null) return;
   commitPending(app, label);
   if (get(app.job, pointer) === value) return;
+  passOverDraft(app);
   replaceJob(app, set(app.job, pointer, value === "" ? undefined : value));
   save(app, label);
 }
@@ -49,6 +61,7 @@ export function choose(app: App, pointer: string, value: unknown, label: string)
 export function changeJob(app: App, label: string, change: (job: Row) => Row): void {
   if (app.open.readOnly !== null) return;
   commitPending(app, label);
+  passOverDraft(app);
   replaceJob(app, change(app.job));
   save(app, label);
 }

@@ -1,5 +1,6 @@
 // Opening, making and removing jobs.
 
+import { clockText } from "../store/texts";
 import type { Job, OpenResult } from "../store/types";
 import { App, messageOf } from "./app";
 import type { Opened, Row, UnitSystem } from "./contract";
@@ -192,26 +193,35 @@ export async function emptyBin(app: App): Promise<void> {
 
 export async function refreshRevisions(app: App, id: string): Promise<void> {
   try {
-    app.update({ revisions: await app.store.revisions(id) });
+    const [revisions, setAside] = await Promise.all([app.store.revisions(id), app.store.keptDrafts(id)]);
+    app.update({ revisions, setAside });
   } catch (error) {
-    app.update({ revisions: [] });
+    app.update({ revisions: [], setAside: [] });
     app.say(messageOf(error), "bad");
   }
 }
 
 /** An earlier revision becomes the job again, as a new step. */
 export async function bringBack(app: App, rev: number): Promise<void> {
-  const { id } = app.open;
   try {
-    const job = await app.store.openRevision(id, rev);
-    app.updateOpen({ job, committed: job, version: app.open.version + 1 });
-    await app.store.commit(id, job, `Brought back copy ${rev}`);
-    app.update({ history: app.store.history(id) });
-    app.say(`Copy ${rev} is the job again. Undo takes you back.`, "plain", true);
-    go({ page: "wall", job: id });
+    await becomeJob(app, await app.store.openRevision(app.open.id, rev), `Copy ${rev}`);
   } catch (error) {
     app.say(messageOf(error), "bad");
   }
+}
+
+/** Typing that was set aside becomes the job, as a new step; its copy stays. */
+export async function bringBackTyping(app: App, at: string, job: Row): Promise<void> {
+  await becomeJob(app, job as Job, `The typing of ${clockText(at)}`).catch((error: unknown) => app.say(messageOf(error), "bad"));
+}
+
+async function becomeJob(app: App, job: Job, name: string): Promise<void> {
+  const { id } = app.open;
+  app.updateOpen({ job, committed: job, version: app.open.version + 1 });
+  await app.store.commit(id, job, `Brought back: ${name}`);
+  app.update({ history: app.store.history(id) });
+  app.say(`${name} is the job again. Undo takes you back.`, "plain", true);
+  go({ page: "wall", job: id });
 }
 
 /** The one door for bytes from outside. */

@@ -94,6 +94,8 @@ export interface State {
   bin: JobSummary[] | null;
   quarantine: QuarantineInfo[] | null;
   revisions: RevisionInfo[] | null;
+  /** Typing that was never saved and was set aside, newest first. */
+  setAside: { slot: string; at: string; job: Row }[];
   open: OpenJob | null;
   openFault: string | null;
   pending: Pending | null;

@@ -255,7 +255,7 @@ export class CoreClient extends EventTarget {
   }
 
   #pump(): void {
-    if (this.#status.phase !== "ready" || this.#running) return;
+    if (this.#status.phase !== "ready" || this.#running || !this.#worker) return;
     const call = this.#queue.shift();
     if (!call) return;
     this.#running = call;

@@ -6,7 +6,7 @@ import type { Check, FaceAnswer, Forms, JointAnswer } from "../app/contract";
 import { groupOf } from "../app/fields";
 import { getRows, rowNameOf } from "../app/pointer";
 import { href } from "../app/routes";
-import { bands, verdict, verdictOf, waiting, workingPart, type VerdictParts } from "./answers";
+import { bands, smallVerdict, verdict, verdictOf, waiting, workingPart, type VerdictParts } from "./answers";
 import { form } from "./form";
 import { issueList } from "./issues";
 import { gone } from "./joint";
@@ -34,6 +34,7 @@ export function facePage(app: App, forms: Forms, id: string): TemplateResult {
     </div>
     <div class="inputs" role="region" aria-label="Measured now" tabindex="-1">
       <h2 class="hidden-word">Measured now</h2>
+      ${face === null ? nothing : html`<p class="face-now only-narrow" aria-hidden="true">${smallVerdict(face.verdict, face.verdict_word)}</p>`}
       ${form(app, forms, group, `${base}/face`, { isGlove: true })}
     </div>
     <div class="face-rest">

@@ -49,6 +49,8 @@ function more(app: App, base: string, section: Section, isWhole: boolean, specs:
 /** A heading that opens; it says its state in words to those who cannot see it turn. */
 export function disclosure(app: App, name: string, label: unknown, body: () => unknown, isForcedOpen = false, isPrinted = false): TemplateResult {
   const isOpen = isForcedOpen || app.state.opened.has(name);
+  // Once a fault has opened it, it stays open: it must not shut under the hand that mends the fault.
+  if (isForcedOpen && !app.state.opened.has(name)) queueMicrotask(() => openParts(app, [name]));
   const id = "part-" + name.replaceAll(/[^\w]+/g, "-");
   return html`<div class="disclosure ${isOpen ? "is-open" : ""}">
     <button type="button" class="disclose" aria-expanded=${isOpen ? "true" : "false"} aria-controls=${id} data-more=${name} @click=${() => toggle(app, name, isOpen)}>

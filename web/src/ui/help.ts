@@ -13,7 +13,7 @@ export function helpPage(app: App): TemplateResult {
       <h2>Typing</h2>
       <ul class="lines">
         <li>Type as you would write it: <b>5/8</b>, <b>1 1/4 in</b>, <b>12' 6 1/2"</b>, <b>9,5 mm</b>, <b>-12</b>.</li>
-        <li>A number alone takes the unit marked beside the field. Tap another unit to change it.</li>
+        <li>A number alone takes the unit marked beside the field. Tap another unit to say that the number is in that unit; the number stays as typed.</li>
         <li>One job may mix units. What you typed stays; beside it stands how it reads in the other system.</li>
         <li>Leave a field, press Enter or make a choice, and it is saved. The foot of the page says when.</li>
         <li>Undo and Redo go back through every step: the buttons, or Ctrl+Z and Ctrl+Y.</li>

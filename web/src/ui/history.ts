@@ -2,16 +2,16 @@
 
 import { html, nothing, type TemplateResult } from "lit";
 import type { App } from "../app/app";
-import { bringBack, refreshRevisions } from "../app/jobs";
+import { bringBack, bringBackTyping, refreshRevisions } from "../app/jobs";
 import { href } from "../app/routes";
 import { bytesText, clockText } from "../store/texts";
 
 export function historyPage(app: App): TemplateResult {
-  const { revisions } = app.state;
+  const { revisions, setAside } = app.state;
   const { id, readOnly, isLoose } = app.open;
   return html`<section class="page">
     <h1 tabindex="-1">Earlier copies</h1>
-    <p class="lead">Three of today and one of each day before, ten in all, and every copy that you pin or export.</p>
+    <p class="lead">Three of today and one of each day before, ten in all; besides these every copy that you pin or export, and every step that Undo can still reach.</p>
     ${isLoose || revisions === null || revisions.length === 0
       ? html`<p class="empty">No earlier copy is kept.</p>`
       : html`<table class="schedule">
@@ -36,6 +36,17 @@ export function historyPage(app: App): TemplateResult {
             )}
           </tbody>
         </table>`}
+    ${setAside.length === 0
+      ? nothing
+      : html`<h2>Typed but not saved</h2>
+          <p class="help">Set aside when the job was opened again and worked on.</p>
+          <ul class="plain-list">
+            ${setAside.map(
+              (item) => html`<li data-testid="set-aside">
+                ${clockText(item.at)} ${readOnly === null ? html`<button type="button" class="plain" @click=${() => void bringBackTyping(app, item.at, item.job)}>Bring back</button>` : nothing}
+              </li>`,
+            )}
+          </ul>`}
     <div class="actions"><a class="button" href=${href({ page: "wall", job: id })}>Back to the wall</a></div>
   </section>`;
 }
