@@ -61,7 +61,7 @@ export function table(data: AnswerTable, withTitle = true): TemplateResult {
     <table>
       <caption class=${withTitle ? "" : "hidden-word"}>${data.title}</caption>
       <thead>
-        <tr>${data.columns.map((column) => html`<th scope="col" class=${column.align === "right" ? "right" : ""}>${column.label}</th>`)}</tr>
+        <tr>${data.columns.map((column) => (column.label === "" ? html`<td></td>` : html`<th scope="col" class=${column.align === "right" ? "right" : ""}>${column.label}</th>`))}</tr>
       </thead>
       <tbody>
         ${data.rows.map(
@@ -111,9 +111,10 @@ export function working(steps: Step[]): TemplateResult {
   </ol>`;
 }
 
-export function workingPart(app: App, steps: Step[], name: string): TemplateResult | typeof nothing {
+/** `about` tells one working from another where a page has several. */
+export function workingPart(app: App, steps: Step[], name: string, about = ""): TemplateResult | typeof nothing {
   if (steps.length === 0) return nothing;
-  return html`<section class="drawer" aria-label="Working">
+  return html`<section class="drawer" aria-label=${about === "" ? "Working" : `Working: ${about}`}>
     ${disclosure(app, name, html`Working, ${steps.length} steps`, () => working(steps), false, true)}
   </section>`;
 }

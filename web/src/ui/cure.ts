@@ -9,18 +9,20 @@ import { blankRow, groupOf, systemOf, type Section } from "../app/fields";
 import { exportFile, type ExportKind } from "../app/files";
 import { today } from "../app/jobs";
 import { get, getRow, getRows, rowNameOf } from "../app/pointer";
+import { reveal } from "../app/takeoff";
 import { bands, cautionsPart, notes, staleNote, tableDrawers, waiting, workingPart } from "./answers";
 import { drawingOf } from "./drawing";
 import { fieldId } from "./field";
 import { focusSoon, jumpTo } from "./focus";
 import { disclosure, form, openParts } from "./form";
 import { issueList } from "./issues";
+import { rowList, type RowList } from "./rows";
 import { titleStrip } from "./title_block";
 
 /** The core's note that the section is not solved yet. */
 const ESTIMATE = "no-numpy";
 
-const ADD_WORDS: Readonly<Record<string, string>> = { sealed: "Add a run", weather: "Add a day", cut: "Add a cut test", two_part: "Add two-part figures" };
+const ADD_WORDS: Readonly<Record<string, string>> = { sealed: "Add a run", cut: "Add a cut test", two_part: "Add two-part figures" };
 
 const EXPORTS: readonly { kind: ExportKind; word: string }[] = [
   { kind: "calendar", word: "Calendar file" },
@@ -82,6 +84,7 @@ function answersOf(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
   const runs = Object.values(answer.runs ?? {});
   const room = answer.room ?? null;
   return html`
+    <h2 class="hidden-word">Answers</h2>
     ${bands(answer.answers ?? [])} ${notes(answer.notes ?? [])} ${drawings(answer.drawings ?? [])}
     <div class="drawers">${tableDrawers(app, answer.tables ?? [], "cure")}</div>
     ${runs.map((run) => runPart(app, run))}
@@ -91,7 +94,7 @@ function answersOf(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
           <h2 id="room-answer-title">${valueOr(getRow(app.job, "/cure/room")["name"], groupOf(forms, "room").label)}</h2>
           ${room.trouble ? html`<p class="waiting">${textOf(room.trouble)}</p>` : nothing} ${bands(room.answers ?? [])}
           ${notes(room.notes ?? [])} ${drawings(room.drawings ?? [])}
-          <div class="drawers">${tableDrawers(app, room.tables ?? [], "room")} ${workingPart(app, room.steps ?? [], "working room")}</div>
+          <div class="drawers">${tableDrawers(app, room.tables ?? [], "room")} ${workingPart(app, room.steps ?? [], "working room", groupOf(forms, "room").label)}</div>
         </section>`}
     ${care(app, runs)}
   `;
@@ -119,18 +122,22 @@ function runPart(app: App, run: CureRun): TemplateResult {
             )}
           </section>`
         : nothing}
-      ${workingPart(app, run.steps ?? [], `working ${run.id}`)}
+      ${workingPart(app, run.steps ?? [], `working ${run.id}`, run.name)}
     </div>
   </section>`;
 }
+
+/** A drawing wider than this keeps its size on a small page, and moves by itself. */
+const WIDE = 700;
 
 /** Each drawing has its caption; the tables beside it say the same in words. */
 function drawings(items: CureDrawing[]): TemplateResult[] {
   return items.map((item) => {
     const drawing = drawingOf(item.svg);
-    return html`<figure class="cure-drawing is-${item.key}" data-testid="drawing-${item.key}">
+    const isWide = (drawing?.viewBox.baseVal.width ?? 0) > WIDE;
+    return html`<figure class="cure-drawing is-${item.key} ${isWide ? "is-wide" : ""}" data-testid="drawing-${item.key}">
       <figcaption class=${isTitled(drawing, item.title) ? "hidden-word" : ""}>${item.title}</figcaption>
-      ${drawing === null ? nothing : html`<div class="drawing" role="region" tabindex="0" aria-label=${item.title}>${drawing}</div>`}
+      ${drawing === null ? nothing : html`<div class="drawing" role=${isWide ? "region" : nothing} tabindex=${isWide ? "0" : nothing} aria-label=${isWide ? item.title : nothing}>${drawing}</div>`}
     </figure>`;
   });
 }
@@ -173,7 +180,7 @@ function inputs(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
     </section>
     <section aria-labelledby="weather-title" data-group="weather">
       <h2 id="weather-title" tabindex="-1" class="inputs-title">${label("weather")}</h2>
-      ${rowsOf(app, forms, "weather", { name: dayName, add: () => addDay(app, forms), copy: (index) => copyDay(app, index) })}
+      ${days(app, forms)}
       ${form(app, forms, { ...cure, label: "Weather" }, "/cure", { only: isWeather })}
     </section>
     <section aria-labelledby="room-title" data-group="room">
@@ -221,9 +228,9 @@ function rowsOf(app: App, forms: Forms, key: string, ways: RowWays): TemplateRes
           return html`<div data-testid="${key}-${index}">
             ${disclosure(
               app,
-              partOf(list, index),
+              partOf(list, row, index),
               html`${ways.name(row, index)}${isFaulty ? html` <span class="count">to fix</span>` : nothing}`,
-              () => html`${form(app, forms, group, base, { level: 4 })}
+              () => html`${form(app, forms, group, base)}
                 ${mayEdit
                   ? html`<div class="actions">
                       <button type="button" data-testid="copy-${key}-${index}" @click=${() => ways.copy(index, spoken)}>Copy</button>
@@ -238,9 +245,9 @@ function rowsOf(app: App, forms: Forms, key: string, ways: RowWays): TemplateRes
     ${mayEdit ? html`<div class="actions"><button type="button" data-testid="add-${key}" @click=${ways.add}>${ADD_WORDS[key] ?? "Add"}</button></div>` : nothing}`;
 }
 
-/** Name of the drawer of a row; a fault that is jumped to opens it (see ui/issues.ts). */
-function partOf(list: string, index: number | string): string {
-  return `row ${list} ${index}`;
+/** Name of the drawer of a row, as a fault that is jumped to opens it (see ui/rows.ts). */
+function partOf(list: string, row: Row, index: number): string {
+  return `row ${list} ${String(row["id"] ?? index)}`;
 }
 
 function runName(row: Row, index: number, word: string, answer: CureAnswer): TemplateResult {
@@ -248,10 +255,18 @@ function runName(row: Row, index: number, word: string, answer: CureAnswer): Tem
   return html`<span class="row-name">${rowNameOf(row, word, index)}</span>${through ? html`<span class="row-sub">${through}</span>` : nothing}`;
 }
 
-function dayName(row: Row, index: number): string {
-  const text = (key: string): string => (typeof row[key] === "string" ? (row[key] as string).trim() : "");
-  const air = [text("least"), text("most")].filter(Boolean).join(" / ");
-  return [[text("day") || `${index + 1}`, text("time")].filter(Boolean).join(" "), air, text("humidity") || text("dew")].filter(Boolean).join(" · ");
+const DAYS: RowList = { group: "weather", list: "/cure/weather", word: "Day", columns: [["day"], ["least"], ["most"], ["humidity"]] };
+
+/** The days stand one to a line, since a forecast is typed row by row. */
+function days(app: App, forms: Forms): TemplateResult {
+  const rows = getRows(app.job, DAYS.list);
+  return html`${rowList(app, forms, DAYS)}
+  ${app.open.readOnly === null
+    ? html`<div class="actions">
+        <button type="button" data-testid="add-weather" @click=${() => addDay(app, forms)}>Add a day</button>
+        ${rows.length > 0 ? html`<button type="button" data-testid="copy-weather" @click=${() => copyDay(app, rows.length - 1)}>Copy the last day</button>` : nothing}
+      </div>`
+    : nothing}`;
 }
 
 function sealantName(app: App, row: Row): string | null {
@@ -268,7 +283,20 @@ function addRun(app: App, forms: Forms): void {
 }
 
 function addDay(app: App, forms: Forms): void {
-  addTo(app, forms, "weather", { day: nextDay(app) }, "least");
+  addRow(app, DAYS.list, { id: newId(), ...blankRow(forms, "weather", systemOf(app.job)), day: nextDay(app) }, "Added a day");
+  goToLastDay(app);
+}
+
+/** A like day after the last one, as a forecast is typed. */
+function copyDay(app: App, index: number): void {
+  appendCopy(app, DAYS.list, index, { day: nextDay(app) }, "Copied a day");
+  goToLastDay(app);
+}
+
+function goToLastDay(app: App): void {
+  const at = getRows(app.job, DAYS.list).length - 1;
+  reveal(app, DAYS.list, at);
+  focusSoon(`cell-cure-weather-${at}-least`);
 }
 
 function addPlain(app: App, forms: Forms, key: string): void {
@@ -277,19 +305,14 @@ function addPlain(app: App, forms: Forms, key: string): void {
 
 function addTo(app: App, forms: Forms, key: string, more: Row, first: string): void {
   const list = listOf(forms, key);
-  const index = getRows(app.job, list).length;
   addRow(app, list, { id: newId(), ...blankRow(forms, key, systemOf(app.job)), ...more }, `Added: ${groupOf(forms, key).label.toLowerCase()}`);
-  openParts(app, [partOf(list, index)]);
-  focusSoon(fieldId(`${list}/${index}/${first}`));
+  openLast(app, list, first);
 }
 
-/** A like day after the last one, as a forecast is typed. */
-function copyDay(app: App, index: number): void {
-  const list = "/cure/weather";
-  const at = getRows(app.job, list).length;
-  appendCopy(app, list, index, { day: nextDay(app) }, "Copied a day");
-  openParts(app, [partOf(list, at)]);
-  focusSoon(fieldId(`${list}/${at}/least`));
+function openLast(app: App, list: string, first: string): void {
+  const at = getRows(app.job, list).length - 1;
+  openParts(app, [partOf(list, getRow(app.job, `${list}/${at}`), at)]);
+  focusSoon(fieldId(`${list}/${at}/${first}`));
 }
 
 function nextDay(app: App): string {

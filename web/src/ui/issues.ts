@@ -62,6 +62,7 @@ export function jump(app: App, issue: Issue, event: Event): void {
     showRow(app, issue.path);
     if (app.state.route.page !== "takeoff") go({ page: "takeoff", job });
   } else if (list === "cure") {
+    showRow(app, issue.path);
     if (app.state.route.page !== "cure") go({ page: "cure", job });
   } else if (app.state.route.page !== "wall") go({ page: "wall", job });
   openParts(app, partsAround(app, issue.path));
@@ -76,8 +77,7 @@ function partsAround(app: App, path: string): string[] {
     .filter((section) => section.advanced.some((spec) => spec.key === key))
     .map((section) => `more ${base} ${section.title}`);
   const [list, index] = split(path);
-  // The rows of the cure stand behind their names (see ui/cure.ts).
-  if (list === "cure") return [...titles, `row /cure/${index} ${split(path)[2]}`];
+  if (list === "cure") return [...titles, ...rowParts(app, path)];
   if (list === "sealants") return [...titles, `sealant ${index}`];
   if (list === "takeoff") return [...titles, SETTINGS_BLOCK, ...rowParts(app, path)];
   return list !== "joints" && list !== "site" ? [...titles, "job block"] : titles;
