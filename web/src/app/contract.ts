@@ -181,6 +181,7 @@ export interface TakeoffAnswer {
   tables?: AnswerTable[];
   drawing?: string | null;
   notes?: { severity: string; text: string }[];
+  steps?: Step[];
 }
 
 /** Rows read from a pasted text, with how each column was understood. */

@@ -100,7 +100,7 @@ function rowLine(app: App, forms: Forms, group: FieldGroup, data: RowList, row: 
     </div>
     ${text && !isBad ? html`<p class="row-text">${text}</p>` : nothing}
     ${isOpen ? nothing : found.map(({ spec, issue }, at) => message(`${cellId(base)}-message-${at}`, issue, spec.label))}
-    <div id=${id} class="row-form" ?hidden=${!isOpen}>${isOpen ? html`${form(app, forms, group, base, { level: 4 })}${actions(app, forms, group, data, index, total, name)}` : nothing}</div>
+    <div id=${id} class="row-form" ?hidden=${!isOpen}>${isOpen ? html`${form(app, forms, group, base)}${actions(app, forms, group, data, index, total, name)}` : nothing}</div>
   </li>`;
 }
 
@@ -169,7 +169,8 @@ export function duplicate(app: App, data: RowList, index: number): void {
   const name = rowNameOf(getRows(app.job, data.list)[index] ?? {}, data.word, index);
   duplicateRow(app, data.list, index, `Duplicated ${name}`);
   reveal(app, data.list, index + 1);
-  focusSoon(cellId(`${data.list}/${index + 1}/${data.columns[0]![0]!}`));
+  // Until the page is drawn again, the row that was there before answers to the new row's name.
+  setTimeout(() => focusSoon(cellId(`${data.list}/${index + 1}/${data.columns[0]![0]!}`)));
 }
 
 /** A new row at the end, with the cursor in its first cell. */

@@ -8,7 +8,7 @@ import { groupOf, systemOf, unitsOf, valueAt } from "../app/fields";
 import { exportFile } from "../app/files";
 import { getRows, rowNameOf } from "../app/pointer";
 import { addRows, compare, dropComparison, dropPaste, openPaste, paste, pasteFile, RUNS, setChange, setColumn, startersOf, takePasted } from "../app/takeoff";
-import { bands, notes, staleNote, table, tableDrawers, waiting } from "./answers";
+import { bands, notes, staleNote, table, tableDrawers, waiting, workingPart } from "./answers";
 import { drawingOf } from "./drawing";
 import { focusSoon, jumpTo } from "./focus";
 import { disclosure, form, openParts } from "./form";
@@ -46,7 +46,7 @@ export function takeoffPage(app: App, forms: Forms): TemplateResult {
     </div>
     <div class="inputs" role="region" aria-label="Runs, packages, prices and rates" tabindex="-1">
       ${runs(app, forms, answer)} ${OTHER_ROWS.map((data) => others(app, forms, data))}
-      <section aria-label="Settings">${disclosure(app, SETTINGS_BLOCK, "Settings: waste, widths, faces, money", () => form(app, forms, groupOf(forms, "takeoff"), "/takeoff", { level: 4 }))}</section>
+      <section aria-label="Settings">${disclosure(app, SETTINGS_BLOCK, "Settings: waste, widths, faces, money", () => form(app, forms, groupOf(forms, "takeoff"), "/takeoff"))}</section>
     </div>
   </div>`;
 }
@@ -68,6 +68,7 @@ function answersOf(app: App, forms: Forms, answer: TakeoffAnswer | null): Templa
     ${notes(answer.notes ?? [])} ${picture(answer)} ${first.map((item) => html`<div class="picture-table">${table(item)}</div>`)}
     <div class="drawers">
       ${tableDrawers(app, tables.filter((item) => item.key !== PICTURE_TABLE), "takeoff")}
+      ${workingPart(app, answer.steps ?? [], "working takeoff")}
       <section class="drawer is-compare">${disclosure(app, "takeoff compare", "Lay a change beside it", () => comparison(app, forms))}</section>
     </div>
   `;
