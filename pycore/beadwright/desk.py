@@ -44,6 +44,7 @@ from .working import InputError, Issue
 __all__ = ["blank", "blank_row", "compare", "compare_takeoff", "evaluate", "export", "forms", "frames", "merge", "open_file", "paste_runs"]
 
 EXPORT_KINDS = ("job", "sheet", "text", "schedule", "takeoff-csv", "takeoff-xlsx", "calendar", "cure-sheet")
+MOST_FAULTS_TOLD = 20
 _NOT_SHARED = ("joints", "takeoff", "cure", "surveys")
 
 
@@ -366,9 +367,14 @@ def frames(job: object, joint_id: str) -> dict[str, Any]:
 def open_file(data: bytes) -> dict[str, Any]:
     """Read the bytes of a job file; see `job.open_bytes`. The answer is JSON-able."""
     opened = open_bytes(bytes(data))
+    issues = [issue.as_dict() for issue in opened.issues]
+    if opened.job is not None and not opened.read_only:
+        # Before such a file is put together with another, its faults are told; what is merely missing is not one.
+        faults = (item for item in evaluate(opened.job, only=())["issues"] if item["severity"] == "error" and item["code"] != "missing")
+        issues += [item for item in faults if item not in issues][:MOST_FAULTS_TOLD]
     return {
         "job": opened.job,
-        "issues": [issue.as_dict() for issue in opened.issues],
+        "issues": issues,
         "read_only": opened.read_only,
         "from_version": opened.from_version,
     }

@@ -121,3 +121,40 @@ def test_a_side_that_keeps_one_temperature_is_not_refused():
     joint = only_joint(make_job({"width": "10 mm", "side_a": still, "side_b": still}))
     assert joint["movement"]["opening_mm"] == joint["movement"]["closing_mm"] == 0.0
     assert joint["verdict"] == "within" and joint["window"]["from_c"] == joint["window"]["to_c"] == 21.0
+
+
+def test_a_file_that_reads_but_holds_nonsense_says_so_at_the_door():
+    """Its nonsense was offered for putting together with a sound job without a word."""
+    job = make_job({"kind": "weird", "face": {"width": "nonsense"}})
+    opened = desk.open_file(desk.export(job, "job")[2])
+    assert opened["job"] == job
+    assert {"/joints/0/kind", "/joints/0/face/width"} <= {issue["path"] for issue in opened["issues"]}
+
+
+def test_faces_do_not_count_as_dry_unasked():
+    joint = only_joint(make_job({"face": {"width": "20 mm", "surface": "15 °C", "air": "15 °C", "humidity": "50 %"}}))
+    assert joint["face"]["verdict"] == "unknown" and "dry" in joint["face"]["verdict_text"]
+    green = next(check for check in joint["face"]["checks"] if check["key"] == "green")
+    assert green["pass"] is None and green["limit"]
+
+
+def test_the_verdict_names_the_sealing_range_it_rests_on():
+    job = make_job({"width": "20 mm", "seal_from": "5 °C", "seal_to": "30 °C"})
+    assert "if sealed between 5 °C and 30 °C" in only_joint(job)["verdict_text"]
+    assert "if sealed" not in only_joint(make_job({"width": "20 mm"}))["verdict_text"]
+
+
+def test_a_window_where_the_sealant_may_not_be_applied_is_no_way_out():
+    grows = {"moisture_irreversible": "0.05 %"}
+    job = make_job({"width": "9 mm", "width_is": "built", "side_a": grows, "side_b": grows}, sealant={"apply_to": "20 °C"})
+    joint = only_joint(job)
+    assert joint["window"]["from_c"] is not None and joint["window"]["from_c"] > 20
+    window = next(band for band in joint["answers"] if band["key"] == "window")
+    assert window["answer"] == "At no workable temperature" and "It would hold" not in joint["verdict_text"]
+
+
+def test_the_printed_face_record_lists_every_gate():
+    job = make_job({"face": {"width": "20 mm", "surface": "15 °C", "air": "15 °C", "humidity": "50 %", "wetness": "dry"}})
+    page = desk.export(job, "sheet")[2].decode()
+    for check in only_joint(job)["face"]["checks"]:
+        assert check["label"] in page

@@ -120,7 +120,7 @@ def _bands(answer: FaceAnswer, system: str) -> list[dict[str, str]]:
     if answer.rod is not None:
         add("rod", "Which rod?", f"{answer.rod.size_label} {answer.rod.label.lower()}" if answer.rod.diameter_mm else answer.rod.size_label, _rod_detail(answer.rod, system), "plain" if answer.rod.fits else "warn")
     if answer.depth is not None:
-        add("depth", "Set which depth?", writing.length(answer.depth.target_mm, system), f"At mid-width, {writing.length(answer.depth.least_mm, system)} to {writing.length(answer.depth.most_mm, system)} allowed by {answer.depth.rule.label}.")
+        add("depth", "Set which depth?", writing.near(answer.depth.target_mm, system), f"At mid-width, {writing.length(answer.depth.least_mm, system)} to {writing.length(answer.depth.most_mm, system)} allowed by {answer.depth.rule.label}.")
     if answer.dew_point_c is not None:
         add("dew", "Dew point?", writing.temperature(answer.dew_point_c, system), "Of the air now.")
     if answer.green_fraction is not None:

@@ -148,7 +148,7 @@ def _headline(judged: Judgement, system: str) -> dict[str, str | None]:
     lap = judged.movement is not None and judged.movement.kind == "lap"
     rod = judged.backing.size_label if judged.backing and not lap else None
     typed = judged.joint.typed_width if widths.present_mm is not None else ""
-    return {"width": typed or writing.length(shown, system), "depth": writing.length(judged.neck_mm, system), "rod": rod}
+    return {"width": typed or writing.length(shown, system), "depth": writing.near(judged.neck_mm, system), "rod": rod}
 
 
 def _figures(judged: Judgement) -> dict[str, Any]:
@@ -271,7 +271,7 @@ def _depth_band(judged: Judgement, system: str, *, lap: bool) -> Band:
             detail += f" {len(against)} other rule set{'s' if len(against) > 1 else ''} would set another depth; see the table."
     else:
         detail += " As entered."
-    return _band("depth", "How deep?", writing.length(judged.neck_mm, system), detail)
+    return _band("depth", "How deep?", writing.near(judged.neck_mm, system), detail)
 
 
 def _rod_band(judged: Judgement, system: str) -> Band:

@@ -56,7 +56,24 @@ def _joint_html(joint: Mapping[str, Any]) -> Iterable[str]:
     yield f"<section><h2>{escape(joint['name'])}</h2><p>{escape(joint['kind_word'])}{' – ' + escape(joint['place']) if joint['place'] else ''}</p>"
     yield f"<p class='verdict'>{escape(joint['verdict_word'])}</p><p>{escape(joint['verdict_text'])}</p>"
     yield from _body_html(joint)
+    yield from _face_html(joint.get("face"))
     yield "</section>"
+
+
+_GATE_WORDS = {True: "good", False: "not good", None: "not known"}
+
+
+def _face_html(face: Mapping[str, Any] | None) -> Iterable[str]:
+    """The answer at the face with every gate, so that the record says what passed and what did not."""
+    if not face:
+        return
+    yield f"<h3>At the face</h3><p class='verdict'>{escape(face['verdict_word'])}</p><p>{escape(face['verdict_text'])}</p>"
+    if face["checks"]:
+        yield "<table><thead><tr><th>Gate</th><th class='r'>Found</th><th class='r'>Limit</th><th>Judged</th></tr></thead><tbody>"
+        for check in face["checks"]:
+            yield f"<tr><td>{escape(check['label'])}</td><td class='r'>{escape(check['value'])}</td><td class='r'>{escape(check['limit'])}</td><td>{_GATE_WORDS[check['pass']]}. {escape(check['text'])}</td></tr>"
+        yield "</tbody></table>"
+    yield from _body_html({"answers": face["answers"], "steps": face["steps"]})
 
 
 def _body_html(joint: Mapping[str, Any]) -> Iterable[str]:

@@ -69,6 +69,14 @@ def length(value_mm: float | None, system: str) -> str:
     return quantity.show_length(value_mm, system)
 
 
+def near(value_mm: float | None, system: str) -> str:
+    """A length to set by rule: in inches the nearest sixteenth, marked where it is not exact."""
+    if value_mm is None or system == METRIC:
+        return length(value_mm, system)
+    exact = quantity.show_inches(value_mm, 32, exact_only=True)
+    return exact or f"about {quantity.show_inches(value_mm, 16)}"
+
+
 def up(value_mm: float, system: str) -> str:
     """A length that must not look smaller than it is: a tenth of a millimetre or 1/1000 in, upwards; an inch fraction stays one."""
     if system == METRIC:
