@@ -54,9 +54,14 @@ function faceVerdict(face: FaceAnswer): VerdictParts {
 }
 
 function reasons(app: App, face: FaceAnswer, id: string): TemplateResult {
-  return html`${face.checks.length > 0 ? html`<ul class="checks" data-testid="checks">${face.checks.map(checkRow)}</ul>` : nothing}
+  return html`${checks(face)}
   <h2 class="hidden-word">Answers</h2>
   ${bands(face.answers)} ${workingPart(app, face.steps, `face working ${id}`)}`;
+}
+
+/** Each gate with what was found and what is wanted. */
+export function checks(face: FaceAnswer): TemplateResult | typeof nothing {
+  return face.checks.length === 0 ? nothing : html`<ul class="checks" data-testid="checks">${face.checks.map(checkRow)}</ul>`;
 }
 
 function checkRow(check: Check): TemplateResult {

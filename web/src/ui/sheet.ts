@@ -13,6 +13,7 @@ import { drawingOf } from "./drawing";
 import { lettered } from "./letters";
 import { photos } from "./photos";
 import { titleBlock, titleStrip } from "./title_block";
+import { checks } from "./face";
 
 const EXPORTS: readonly { kind: ExportKind; word: string }[] = [
   { kind: "job", word: "Job file" },
@@ -129,7 +130,7 @@ function jointSheet(app: App, forms: Forms, row: Row, index: number, answer: Joi
     ${answer === undefined ? nothing : bands(answer.answers ?? [])} ${notes(answer?.notes ?? [])} ${(answer?.tables ?? []).map((item) => table(item))}
     ${answer?.steps && answer.steps.length > 0 ? html`<h3>Working</h3>${working(answer.steps)}` : nothing}
     ${photoIds(row).length > 0 ? html`<h3>Photos</h3>${photos(app, row, null)}` : nothing}
-    ${answer?.face ? html`<h3>${groupOf(forms, "face").label}</h3>${values(app, forms, groupOf(forms, "face"), `${base}/face`)}${verdict({ verdict: answer.face.verdict, word: answer.face.verdict_word, text: answer.face.verdict_text }, false)}${bands(answer.face.answers)}` : nothing}
+    ${answer?.face ? html`<h3>${groupOf(forms, "face").label}</h3>${values(app, forms, groupOf(forms, "face"), `${base}/face`)}${verdict({ verdict: answer.face.verdict, word: answer.face.verdict_word, text: answer.face.verdict_text }, false)}${checks(answer.face)}${bands(answer.face.answers)}` : nothing}
   </section>`;
 }
 

@@ -229,7 +229,7 @@ function list(app: App, place: Place): TemplateResult {
     .value=${live(chosen)}
     @change=${(event: Event) => choose(app, place.pointer, (event.target as HTMLSelectElement).value, place.spec.label)}
   >
-    ${chosen === "" || !place.spec.required ? html`<option value="" ?selected=${chosen === ""}>${place.spec.required ? "Choose…" : "Not said"}</option>` : nothing}
+    ${chosen === "" || (!place.spec.required && place.fallback === null) ? html`<option value="" ?selected=${chosen === ""}>${place.spec.required ? "Choose…" : "Not said"}</option>` : nothing}
     ${chosen !== "" && !isKnown ? html`<option value=${chosen} selected>${chosen}</option>` : nothing}
     ${[...groups].map(([name, choices]) =>
       name === "" ? choices.map(option) : html`<optgroup label=${name}>${choices.map(option)}</optgroup>`,
