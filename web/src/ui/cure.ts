@@ -3,14 +3,14 @@
 import { html, nothing, type TemplateResult } from "lit";
 import { repeat } from "lit/directives/repeat.js";
 import type { App } from "../app/app";
-import type { CureAnswer, CureDrawing, CureRun, Forms, Row } from "../app/contract";
+import type { Answer, CureAnswer, CureDrawing, CureRun, Forms, Row } from "../app/contract";
 import { addRow, appendCopy, duplicateRow, newId, removeRow } from "../app/editing";
 import { blankRow, groupOf, systemOf, type Section } from "../app/fields";
 import { exportFile, type ExportKind } from "../app/files";
 import { today } from "../app/jobs";
 import { get, getRow, getRows, rowNameOf } from "../app/pointer";
 import { reveal } from "../app/takeoff";
-import { bands, cautionsPart, notes, staleNote, tableDrawers, waiting, workingPart } from "./answers";
+import { bands, cautions, notes, staleNote, tableDrawers, waiting, workingPart } from "./answers";
 import { drawingOf } from "./drawing";
 import { fieldId } from "./field";
 import { focusSoon, jumpTo } from "./focus";
@@ -84,17 +84,16 @@ function answersOf(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
   const runs = Object.values(answer.runs ?? {});
   const room = answer.room ?? null;
   return html`
-    <h2 class="hidden-word">Answers</h2>
-    ${bands(answer.answers ?? [])} ${notes(answer.notes ?? [])} ${drawings(answer.drawings ?? [])}
-    <div class="drawers">${tableDrawers(app, answer.tables ?? [], "cure")}</div>
+    ${answered(answer, true)} ${notes(answer.notes ?? [])} ${drawings(answer.drawings ?? [])}
+    ${drawers(tableDrawers(app, answer.tables ?? [], "cure"))}
     ${runs.map((run) => runPart(app, run))}
     ${room === null
       ? nothing
       : html`<section class="part" aria-labelledby="room-answer-title" data-testid="cure-room">
           <h2 id="room-answer-title">${valueOr(getRow(app.job, "/cure/room")["name"], groupOf(forms, "room").label)}</h2>
-          ${room.trouble ? html`<p class="waiting">${textOf(room.trouble)}</p>` : nothing} ${bands(room.answers ?? [])}
+          ${room.trouble ? html`<p class="waiting">${textOf(room.trouble)}</p>` : nothing} ${answered(room)}
           ${notes(room.notes ?? [])} ${drawings(room.drawings ?? [])}
-          <div class="drawers">${tableDrawers(app, room.tables ?? [], "room")} ${workingPart(app, room.steps ?? [], "working room", groupOf(forms, "room").label)}</div>
+          ${drawers([...tableDrawers(app, room.tables ?? [], "room"), workingPart(app, room.steps ?? [], "working room", groupOf(forms, "room").label)])}
         </section>`}
     ${care(app, runs)}
   `;
@@ -102,29 +101,31 @@ function answersOf(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
 
 function runPart(app: App, run: CureRun): TemplateResult {
   const title = `run-${run.id}`;
-  const filled = (run.record ?? []).filter((line) => line.value !== "");
   return html`<section class="part" aria-labelledby=${title} data-testid="cure-run-${run.id}" data-method=${run.section?.method ?? nothing}>
     <h2 id=${title}>${run.name}</h2>
     ${run.start_text ? html`<p class="detail">${run.start_text}</p>` : nothing}
-    ${run.trouble ? html`<p class="waiting" data-testid="trouble">${textOf(run.trouble)}</p>` : nothing} ${bands(run.answers ?? [])}
+    ${run.trouble ? html`<p class="waiting" data-testid="trouble">${textOf(run.trouble)}</p>` : nothing} ${answered(run)}
     ${notes(run.notes ?? [])} ${drawings(run.drawings ?? [])}
-    <div class="drawers">
-      ${tableDrawers(app, run.tables ?? [], run.id)}
-      ${filled.length > 0
-        ? html`<section class="drawer">
-            ${disclosure(
-              app,
-              `record ${run.id}`,
-              "Sealing record",
-              () => html`<dl class="values">${filled.map((line) => html`<div><dt>${line.label}</dt><dd>${line.value}</dd></div>`)}</dl>`,
-              false,
-              true,
-            )}
-          </section>`
-        : nothing}
-      ${workingPart(app, run.steps ?? [], `working ${run.id}`, run.name)}
-    </div>
+    ${drawers([...tableDrawers(app, run.tables ?? [], run.id), record(app, run), workingPart(app, run.steps ?? [], `working ${run.id}`, run.name)])}
   </section>`;
+}
+
+/** What was written down when it was sealed; a run that nothing is known of has no record to show. */
+function record(app: App, run: CureRun): TemplateResult | typeof nothing {
+  const filled = (run.record ?? []).filter((line) => line.value !== "");
+  if (run.trouble || filled.length === 0) return nothing;
+  const lines = (): TemplateResult => html`<dl class="values">${filled.map((line) => html`<div><dt>${line.label}</dt><dd>${line.value}</dd></div>`)}</dl>`;
+  return html`<section class="drawer">${disclosure(app, `record ${run.id}`, "Sealing record", lines, false, true)}</section>`;
+}
+
+function answered(part: { answers?: Answer[] }, isTop = false): TemplateResult | typeof nothing {
+  const items = part.answers ?? [];
+  if (items.length === 0) return nothing;
+  return html`${isTop ? html`<h2 class="hidden-word">Answers</h2>` : nothing}${bands(items)}`;
+}
+
+function drawers(items: (TemplateResult | typeof nothing)[]): TemplateResult | typeof nothing {
+  return items.some((item) => item !== nothing) ? html`<div class="drawers">${items}</div>` : nothing;
 }
 
 /** A drawing wider than this keeps its size on a small page, and moves by itself. */
@@ -147,13 +148,14 @@ function isTitled(drawing: SVGSVGElement | null, title: string): boolean {
   return drawing?.querySelector("title")?.textContent === title;
 }
 
+/** What stops or warns about the joints sealed; their plain notes stand on the pages of the joints. */
 function care(app: App, runs: CureRun[]): TemplateResult | typeof nothing {
   const sealed = new Set(runs.map((run) => run.joint));
-  const own = (app.state.result?.evaluation.cautions ?? []).filter((item) => item.joints?.some((id) => sealed.has(id)));
+  const own = (app.state.result?.evaluation.cautions ?? []).filter((item) => item.severity !== "note" && item.joints?.some((id) => sealed.has(id)));
   if (own.length === 0) return nothing;
   return html`<section class="part" aria-labelledby="cautions-title">
     <h2 id="cautions-title">Take care</h2>
-    ${cautionsPart(app, own, "of the cure", true)}
+    ${cautions(app, own, true)}
   </section>`;
 }
 

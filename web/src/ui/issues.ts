@@ -39,7 +39,7 @@ export function issueList(app: App, wanted: (issue: Issue) => boolean): Template
 /** On the wall page a joint's fault needs the joint's name. */
 function placeWords(app: App, issue: Issue): string {
   const [list, index, at] = split(issue.path);
-  if ((list === "takeoff" || list === "cure") && index !== undefined && at !== undefined) {
+  if (list === "takeoff" && index !== undefined && at !== undefined) {
     const row = getRows(app.job, `/${list}/${index}`)[Number(at)];
     return row === undefined ? "" : ` (${rowNameOf(row, "Row", Number(at))})`;
   }
