@@ -9,10 +9,12 @@ A typed text is never changed: `parse` returns it beside its value.
 
 from __future__ import annotations
 
+import json
 import math
 import re
 from fractions import Fraction
 from functools import cache, lru_cache
+from importlib import resources
 from typing import TYPE_CHECKING
 
 from attrs import frozen
@@ -232,7 +234,24 @@ def registry() -> pint.UnitRegistry:
 
 @cache
 def _factor_and_offset(kind: str, label: str) -> tuple[Fraction, Fraction]:
-    """Exact `core = factor * typed + offset` of one accepted unit, worked out by pint."""
+    """Exact `core = factor * typed + offset` of one accepted unit.
+
+    Read from `units.json`, where pint's own fractions are kept so that a start on a tablet need
+    not build pint's registry; a test holds the file to pint.
+    """
+    kept = _kept_factors().get(kind, {}).get(label)
+    return (Fraction(kept[0]), Fraction(kept[1])) if kept else work_out(kind, label)
+
+
+@cache
+def _kept_factors() -> dict[str, dict[str, list[str]]]:
+    text = resources.files(__package__).joinpath("units.json").read_text(encoding="utf-8")
+    kept: dict[str, dict[str, list[str]]] = json.loads(text)
+    return kept
+
+
+def work_out(kind: str, label: str) -> tuple[Fraction, Fraction]:
+    """Factor and offset of a unit as pint defines it (KeyError for an unknown one)."""
     spec = KINDS[kind]
     unit = unit_of(kind, label)
     if spec.core == "":
@@ -566,3 +585,9 @@ def exact_text(value: Fraction, kind: str, unit: str) -> str:
         whole, part = divmod(number, 1)
         body = f"{whole} {part.numerator}/{part.denominator}" if whole else f"{part.numerator}/{part.denominator}"
     return f"{sign}{body} {unit}"
+
+
+def units_text() -> str:
+    """What `units.json` holds: every accepted unit's factor and offset, worked out by pint."""
+    table = {kind.key: {unit.label: [str(part) for part in work_out(kind.key, unit.label)] for unit in kind.units} for kind in KINDS.values()}
+    return json.dumps(table, ensure_ascii=False, indent=1) + "\n"

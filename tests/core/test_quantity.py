@@ -1,6 +1,9 @@
 """What people type is read exactly, and a wrong text says what was expected."""
 
+import subprocess
+import sys
 from fractions import Fraction
+from pathlib import Path
 
 import pytest
 
@@ -112,3 +115,17 @@ def test_a_plain_number_that_is_none_is_refused_and_never_raises_otherwise(typed
     """“cheap” once broke the reader: the e was taken for an exponent."""
     with pytest.raises(InputError):
         quantity.parse_number(typed)
+
+
+def test_the_factors_kept_in_the_file_are_those_of_pint():
+    """To renew the file: write `quantity.units_text()` to `pycore/beadwright/units.json`."""
+    for kind in quantity.KINDS.values():
+        for unit in kind.units:
+            assert quantity._factor_and_offset(kind.key, unit.label) == quantity.work_out(kind.key, unit.label)
+
+
+def test_reading_a_quantity_does_not_build_the_registry():
+    """Building pint's registry costs a tablet more than all else at the start."""
+    code = "import sys; from beadwright import desk; desk.evaluate({'units': 'inch', 'site': {'summer_air': '90 °F', 'winter_air': '10 °F'}}); print('pint' in sys.modules)"
+    done = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True, env={"PYTHONPATH": str(Path(quantity.__file__).parents[1]), "PATH": "/usr/bin:/bin"})
+    assert done.stdout.strip() == "False"

@@ -11,7 +11,28 @@ import json
 from pathlib import Path
 from typing import Any
 
-from ..fields import CAUSE, CURE, CUT, EXTRA, FACE, JOB, JOINT, PACK, RATE, ROOM, RUN, SEALANT, SEALED, SIDE, SITE, TAKEOFF, TWO_PART, WEATHER, Field, Group
+from ..fields import (
+    CAUSE,
+    CURE,
+    CUT,
+    EXTRA,
+    FACE,
+    JOB,
+    JOINT,
+    PACK,
+    RATE,
+    ROOM,
+    RUN,
+    SEALANT,
+    SEALED,
+    SIDE,
+    SITE,
+    TAKEOFF,
+    TWO_PART,
+    WEATHER,
+    Field,
+    Group,
+)
 from .limits import FORMAT, MAX_JOINTS, MAX_TEXT, VERSION
 
 PATH = Path(__file__).with_name(f"beadwright-job-{VERSION}.schema.json")
