@@ -503,6 +503,46 @@ def test_promise_8_a_database_that_the_browser_dropped_is_written_again_from_the
     assert read_anew(page, "a")["job"]["edit"] == "3"
 
 
+def test_promise_8_jobs_of_a_dropped_database_come_back_from_the_second_copy(page, store_context):
+    """The whole database goes while nobody looks, as browsers do with one that they find damaged after a crash."""
+    begin(page)
+    page.evaluate(
+        """async () => { await store.create(bw.job("a", 1)); await store.commit("a", bw.job("a", 2)); await store.create(bw.job("b", 7));
+        await store.create(bw.job("c", 8)); await store.remove("c"); await store.emptyBin(); await bw.sleep(1300); }"""
+    )
+    page.goto(page.url.replace("store_page", "empty"))
+    devtools = store_context.new_cdp_session(page)
+    devtools.send("Storage.clearDataForOrigin", {"origin": page.evaluate("location.origin"), "storageTypes": "indexeddb"})
+    page.goto(page.url.replace("empty", "store_page"))
+    page.wait_for_function("window.bw !== undefined")
+    assert page.evaluate("async () => (await indexedDB.databases()).length") == 0
+    begin(page)
+    got = page.evaluate(
+        """async () => { await bw.sleep(0); const list = await store.list(); const opened = await store.open("a");
+        await store.commit("a", bw.job("a", 3)); await (await store.undo("a")).saved;
+        return [list.map((j) => j.id).sort(), opened.job.edit, opened.rev, opened.recovered, store.log.filter((e) => e.type === "notice").map((e) => e.text), (await bw.dump()).revisions.at(-2).payload.edit]; }"""
+    )
+    assert got[0] == ["a", "b"], "and what was thrown away stays away"
+    assert got[1:4] == ["2", 2, None]
+    assert len(got[4]) == 1
+    assert "2 jobs were brought back" in got[4][0]
+
+
+def test_promise_8_a_damaged_second_copy_brings_nothing_back_and_none_is_needed(page):
+    begin(page)
+    got = page.evaluate(
+        """async () => { await store.create(bw.job("a", 1)); await bw.sleep(1300);
+        const cache = await caches.open("beadwright-second-copy"); const [request] = await cache.keys();
+        const copy = await (await cache.match(request)).json(); copy.payload.edit = "flipped"; await cache.put(request, Response.json(copy));
+        await store.dispose(); await bw.raw(async (db) => { await db.clear("jobs"); await db.clear("revisions"); });
+        const other = await bw.open(); const list = await other.list(); await other.dispose();
+        Object.defineProperty(window, "caches", {value: undefined, configurable: true});
+        const bare = await bw.open(); await bare.create(bw.job("z", 1)); await bw.sleep(1300);
+        return [list, (await bare.list()).length]; }"""
+    )
+    assert got == [[], 1]
+
+
 # ---- 9 -----------------------------------------------------------------------------------------------------------
 
 WITHOUT_LOCKS = "Object.defineProperty(navigator, 'locks', {value: undefined})"

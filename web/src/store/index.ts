@@ -5,10 +5,11 @@ import { Database, isQuotaFault } from "./db";
 import { jsonCopy } from "./envelope";
 import { askPersistence, gatherFacts } from "./facts";
 import { DATABASE_VERSION, MIGRATIONS, RECORD_SCHEMA } from "./migrations";
+import { bringBack, Mirror } from "./mirror";
 import * as photos from "./photos";
 import { mendPointers, readJob, setAside, type Rules } from "./reading";
 import { Session, toStoreError, type SessionContext, type Stamp } from "./session";
-import { TEXT } from "./texts";
+import { broughtBackText, TEXT } from "./texts";
 import {
   StoreError,
   type Clash,
@@ -56,10 +57,13 @@ export class Store extends EventTarget {
   readonly #db: Database;
   readonly #channel: Channel;
   readonly #locks: WriterLocks;
+  readonly #mirror: Mirror;
   readonly #sessions = new Map<string, Session>();
   #core: string;
   #tables: string[];
   #stopped: string | null = null;
+  #hasListener = false;
+  readonly #untold: StoreEvents["notice"][] = [];
   /** Why the kept jobs could not be reached when the page started, ready to show, or null. */
   startProblem: string | null = null;
 
@@ -85,6 +89,7 @@ export class Store extends EventTarget {
         this.#emit("notice", { id: null, text: TEXT.blocked });
       },
     });
+    this.#mirror = new Mirror(name);
     this.#channel = new Channel(name);
     this.#channel.listen((message) => this.#hear(message));
     this.#locks = new WriterLocks(`${name}:job:`, this.#channel);
@@ -105,11 +110,16 @@ export class Store extends EventTarget {
       await store.#announceSchema();
       const mended = await mendPointers(store.#db);
       if (mended.length > 0) store.#emit("jobs", { id: null, rev: null, isOther: false });
+      const pointers = await shelf.pointers(store.#db);
+      const bringingBack = store.#bringBack(new Set(pointers.map((pointer) => pointer.id)));
+      // Only an empty list waits: there may be all the jobs to bring back.
+      if (pointers.length === 0) await bringingBack;
     } catch (error) {
       const { code, message } = toStoreError(error);
       if (code === "newer-app") store.#stopped = store.startProblem = TEXT.newerApp;
       if (code === "no-storage") store.startProblem = TEXT.noStorage;
       store.startProblem ??= code === "failed" ? TEXT.unreachable : message;
+      store.#emit("notice", { id: null, text: store.startProblem });
     }
     return store;
   }
@@ -286,6 +296,8 @@ export class Store extends EventTarget {
   /** Deletes for good what is in the bin, photos and copies too. */
   async emptyBin(ids?: string[]): Promise<number> {
     const removed = await shelf.emptyBin(this.#db, ids);
+    for (const id of removed) this.#mirror.note(id, null);
+    await this.#mirror.flush();
     for (const id of removed) this.#emit("jobs", { id, rev: null, isOther: false });
     if (removed.length > 0) this.#emit("facts", {});
     return removed.length;
@@ -390,6 +402,7 @@ export class Store extends EventTarget {
   /** For the end of a page or a test: write what is left and let everything go. */
   async dispose(): Promise<void> {
     await this.flush().catch(() => undefined);
+    await this.#mirror.flush();
     for (const session of this.#sessions.values()) session.stop();
     this.#sessions.clear();
     this.#locks.releaseAll();
@@ -408,7 +421,8 @@ export class Store extends EventTarget {
       window: this.#locks.window,
       stamp: () => this.#stamp(),
       onState: (session) => this.#emit("save-state", { id: session.id, state: session.state }),
-      onSaved: (session) => {
+      onSaved: (session, newest) => {
+        this.#mirror.note(session.id, newest);
         const rev = session.pointer?.rev ?? null;
         this.#emit("jobs", { id: session.id, rev, isOther: false });
         this.#channel.send({ type: "changed", id: session.id, rev: rev ?? 0 });
@@ -505,6 +519,19 @@ export class Store extends EventTarget {
     if (!wasOpen) await this.close(job.id);
   }
 
+  /** A job that is in the second copy and not in the database has been lost by the browser. */
+  async #bringBack(known: ReadonlySet<string>): Promise<void> {
+    if (this.#stopped !== null) return;
+    try {
+      const back = await bringBack(this.#db, await this.#mirror.readOthers(known), this.#rules.schema);
+      if (back.length === 0) return;
+      this.#emit("notice", { id: null, text: broughtBackText(back.length) });
+      this.#emit("jobs", { id: null, rev: null, isOther: false });
+    } catch {
+      // The copies stay where they are; the next start tries again.
+    }
+  }
+
   /** Tell older windows, now and whenever they write, which layout the records have from here on. */
   async #announceSchema(): Promise<void> {
     const { schema } = this.#rules;
@@ -543,6 +570,7 @@ export class Store extends EventTarget {
 
   readonly #hurry = (): void => {
     for (const session of this.#sessions.values()) session.hurry();
+    void this.#mirror.flush();
   };
 
   readonly #onVisibility = (): void => {
@@ -550,7 +578,21 @@ export class Store extends EventTarget {
     this.#hurry();
   };
 
+  /** What there is to tell from the start is told to the first who listens. */
+  override addEventListener(...args: Parameters<EventTarget["addEventListener"]>): void {
+    super.addEventListener(...args);
+    if (args[0] !== "notice" || this.#hasListener) return;
+    this.#hasListener = true;
+    queueMicrotask(() => {
+      for (const detail of this.#untold.splice(0)) this.#emit("notice", detail);
+    });
+  }
+
   #emit<K extends keyof StoreEvents>(type: K, detail: StoreEvents[K]): void {
+    if (type === "notice" && !this.#hasListener) {
+      this.#untold.push(detail as StoreEvents["notice"]);
+      return;
+    }
     this.dispatchEvent(new CustomEvent(type, { detail }));
   }
 }

@@ -38,7 +38,7 @@ export interface SessionContext {
   window: string;
   stamp: () => Stamp;
   onState: (session: Session) => void;
-  onSaved: (session: Session) => void;
+  onSaved: (session: Session, newest: Envelope<Job>) => void;
   onStopped: (session: Session, code: "newer-app" | "other-window") => void;
   onNotice: (id: string, text: string) => void;
 }
@@ -307,7 +307,7 @@ export class Session {
         this.#recover();
         for (const item of batch) this.#remember(item.envelope!.rev, item.job, item.chars);
         this.#ctx.onState(this);
-        this.#ctx.onSaved(this);
+        this.#ctx.onSaved(this, batch[batch.length - 1]!.envelope!);
         for (const item of batch) item.settle?.resolve();
         if (isRebuilt) this.#ctx.onNotice(this.id, TEXT.dropped);
       } catch (error) {

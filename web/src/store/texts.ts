@@ -69,3 +69,8 @@ export const TEXT = {
 export function recoveredText(faultyRev: number, reason: string, openedAt: string, now: Date = new Date()): string {
   return `The newest copy (${faultyRev}) could not be used: ${reason}. It was set aside, and the copy saved ${clockText(openedAt, now)} was opened.`;
 }
+
+export function broughtBackText(count: number): string {
+  const jobs = count === 1 ? "1 job was" : `${count} jobs were`;
+  return `The browser had lost its stored data. ${jobs} brought back from a second copy, without photos and older copies. Make a backup now.`;
+}
