@@ -9,7 +9,8 @@ import pytest
 from playwright.sync_api import Page, expect
 
 from . import shell
-from .conftest import PHONE, ROOT, TABLET_LANDSCAPE, TABLET_PORTRAIT
+from .conftest import ROOT
+from .test_access import SMALL, TAP_PX, WIDTHS
 
 pytestmark = pytest.mark.browser
 
@@ -215,16 +216,15 @@ def test_axe_finds_nothing(tablet, site, theme):
     assert faults_of(page) == []
 
 
-@pytest.mark.parametrize(
-    "size", [TABLET_LANDSCAPE, TABLET_PORTRAIT, PHONE], ids=["lying", "standing", "phone"]
-)
-def test_nothing_scrolls_sideways(make_context, site, size):
-    page = cure(make_context(**size), site.url)
+@pytest.mark.parametrize("width", WIDTHS)
+def test_nothing_scrolls_sideways_and_every_target_takes_a_finger(make_context, site, width):
+    page = cure(make_context(**WIDTHS[width]), site.url)
     solved(page)
     unfold(page, "sealed-0")
     page.get_by_test_id("open-weather-0").click()
     wide, seen = page.evaluate("[document.documentElement.scrollWidth, innerWidth]")
     assert wide <= seen
+    assert page.evaluate(SMALL, TAP_PX) == []
 
 
 def test_the_page_is_printed_whole(tablet, site):
