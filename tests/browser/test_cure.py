@@ -9,7 +9,7 @@ import pytest
 from playwright.sync_api import Page, expect
 
 from . import shell
-from .conftest import ROOT
+from .conftest import PLACE, ROOT
 from .test_access import SMALL, TAP_PX, WIDTHS
 
 pytestmark = pytest.mark.browser
@@ -172,6 +172,15 @@ def test_a_day_is_copied_to_the_day_after_the_last(tablet, site):
     expect(page.locator(cell.format(5, "day"))).to_have_value("2026-11-29")
     kept = page.locator(cell.format(4, "most")).input_value()
     expect(page.locator(cell.format(5, "most"))).to_have_value(kept)
+
+
+def test_a_job_without_a_zone_is_offered_that_of_the_tablet(tablet, site):
+    page = cure(tablet, site.url)
+    expect(page.get_by_test_id("take-zone")).to_have_count(0)
+    shell.type_in(page, "/cure/zone", "")
+    page.get_by_test_id("take-zone").click()
+    expect(shell.line(page, "/cure/zone")).to_have_value(PLACE["timezone_id"])
+    expect(page.get_by_test_id("take-zone")).to_have_count(0)
 
 
 def test_days_are_pasted_as_text(tablet, site):

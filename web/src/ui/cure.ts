@@ -4,8 +4,8 @@ import { html, nothing, type TemplateResult } from "lit";
 import { repeat } from "lit/directives/repeat.js";
 import type { App } from "../app/app";
 import type { Answer, CureAnswer, CureDrawing, CureRun, Forms, Row } from "../app/contract";
-import { addRow, appendCopy, duplicateRow, newId, removeRow } from "../app/editing";
-import { blankRow, groupOf, systemOf, type Section } from "../app/fields";
+import { addRow, appendCopy, choose, duplicateRow, newId, removeRow } from "../app/editing";
+import { blankRow, groupOf, systemOf, valueAt, type Section } from "../app/fields";
 import { exportFile, type ExportKind } from "../app/files";
 import { today } from "../app/jobs";
 import { get, getRow, getRows, rowNameOf } from "../app/pointer";
@@ -23,6 +23,8 @@ import { titleStrip } from "./title_block";
 const ESTIMATE = "no-numpy";
 
 const ADD_WORDS: Readonly<Record<string, string>> = { sealed: "Add a run", cut: "Add a cut test", two_part: "Add two-part figures" };
+
+const ZONE = "/cure/zone";
 
 const EXPORTS: readonly { kind: ExportKind; word: string }[] = [
   { kind: "calendar", word: "Calendar file" },
@@ -191,7 +193,7 @@ function inputs(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
     </section>
     <section aria-labelledby="settings-title" data-group="cure">
       <h2 id="settings-title" tabindex="-1" class="inputs-title">Settings</h2>
-      ${form(app, forms, cure, "/cure", { only: (section) => !isWeather(section) })}
+      ${form(app, forms, cure, "/cure", { only: (section) => !isWeather(section) })} ${zoneOffer(app, forms)}
     </section>
     ${(["cut", "two_part"] as const).map(
       (key) => html`<section aria-labelledby="${key}-title" data-group=${key}>
@@ -200,6 +202,14 @@ function inputs(app: App, forms: Forms, answer: CureAnswer): TemplateResult {
       </section>`,
     )}
   </div>`;
+}
+
+/** The zone that this tablet keeps, for a job that names none: with it the hours stay right when the clocks change. */
+function zoneOffer(app: App, forms: Forms): TemplateResult | typeof nothing {
+  const zone = Intl.DateTimeFormat().resolvedOptions().timeZone;
+  if (!zone || app.open.readOnly !== null || valueAt(app.job, ZONE) !== "") return nothing;
+  const label = groupOf(forms, "cure").fields.find((spec) => spec.key === "zone")?.label ?? "";
+  return html`<div class="actions"><button type="button" data-testid="take-zone" @click=${() => choose(app, ZONE, zone, label)}>${label} of this tablet: ${zone}</button></div>`;
 }
 
 interface RowWays {
