@@ -295,7 +295,7 @@ def run(
                 report.dropped += 1
                 context = launch()
                 page = context.pages[0] if context.pages else context.new_page()
-                page.goto(url)
+                page.goto(url if make_job is None else f"{url}#/job/{job}")
                 page.wait_for_selector(f'{state_selector}[data-kind]:not([data-kind=""])', state="attached")
                 page.goto(blank)
                 dump = page.evaluate(DUMP, database)
