@@ -126,6 +126,9 @@ def test_a_joint_is_sized_read_checked_at_the_face_and_printed(tablet, site, sys
     shell.type_in(page, f"{base}/surface", journey.face_surface)
     shell.type_in(page, f"{base}/air", journey.face_air)
     shell.type_in(page, f"{base}/humidity", "50")
+    # Nothing counts as dry until someone says so.
+    expect(shell.verdict(page)).to_contain_text("whether the bond faces are dry")
+    shell.field(page, f"{base}/wetness").get_by_text("Dry", exact=True).click()
     expect(shell.verdict(page)).to_have_attribute("data-verdict", "seal")
     expect(page.get_by_test_id("checks").get_by_role("listitem").first).to_be_visible()
     page.locator(f'[data-pointer="{base}/wetness"]').get_by_text("Wet", exact=True).click()
