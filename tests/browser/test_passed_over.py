@@ -1,5 +1,7 @@
 """Faults found by a stranger at the page: an offer passed over, a drawer that shut under the hand."""
 
+import json
+
 from playwright.sync_api import expect
 
 from . import shell
@@ -51,3 +53,21 @@ def test_a_drawer_opened_by_a_fault_stays_open_while_the_fault_is_mended(tablet,
     expect(target).to_have_value("0.05")
     target.blur()
     expect(target).to_have_value("0.05 %")
+
+
+def test_one_job_is_saved_with_its_photos_and_nothing_of_the_others(tablet, site, tmp_path):
+    page = shell.demo(tablet, site.url)
+    page.goto(site.url + "#/")
+    page.get_by_test_id("new-inch").click()
+    shell.type_in(page, "/title", "Another job")
+    shell.saved(page)
+    page.goto(site.url + "#/job/demo-harbour-hall")
+    with page.expect_download() as waiting:
+        page.get_by_test_id("export-with-photos").click()
+    waiting.value.save_as(tmp_path / "one.json")
+    text = (tmp_path / "one.json").read_text("utf-8")
+    assert "Harbour Hall" in text and json.loads(text)
+    assert "Another job" not in text
+    page.goto(site.url + "#/")
+    page.get_by_test_id("restore").set_input_files(tmp_path / "one.json")
+    expect(page.locator("main")).to_contain_text("Harbour Hall")

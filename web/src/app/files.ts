@@ -120,11 +120,13 @@ export function saveText(name: string, text: string): void {
   download(new File([text], name, { type: "application/json" }));
 }
 
-export async function backUpAll(app: App, way: "save" | "share"): Promise<void> {
+/** Everything on this tablet, or the one job that is open; either with its photos, to be restored as a backup. */
+export async function backUp(app: App, way: "save" | "share", only?: string): Promise<void> {
   try {
-    const blob = await app.store.backup();
+    const blob = await app.store.backup(only === undefined ? undefined : [only]);
     const day = new Date().toISOString().slice(0, 10);
-    await hand(new File([blob], `beadwright-backup-${day}.json`, { type: "application/json" }), way);
+    const name = only === undefined ? `beadwright-backup-${day}.json` : `beadwright-job-with-photos-${day}.json`;
+    await hand(new File([blob], name, { type: "application/json" }), way);
     app.update({ facts: await app.store.facts() });
   } catch (error) {
     if (isAbort(error)) return;

@@ -3,7 +3,7 @@
 import { html, nothing, type TemplateResult } from "lit";
 import { repeat } from "lit/directives/repeat.js";
 import type { App } from "../app/app";
-import { backUpAll, canShareFiles, count, restoreBackup, takeFile } from "../app/files";
+import { backUp, canShareFiles, count, restoreBackup, takeFile } from "../app/files";
 import { makeJob, removeJob } from "../app/jobs";
 import { href } from "../app/routes";
 import type { JobSummary } from "../store/types";
@@ -27,8 +27,8 @@ export function jobsPage(app: App): TemplateResult {
       <h2 id="all-jobs">All jobs together</h2>
       <p class="help">A backup file is the only copy outside this browser. Make one at the end of the day.</p>
       <div class="actions">
-        <button type="button" data-testid="backup" @click=${() => void backUpAll(app, "save")}>Back up to a file</button>
-        ${canShareFiles() ? html`<button type="button" @click=${() => void backUpAll(app, "share")}>Share a backup</button>` : nothing}
+        <button type="button" data-testid="backup" @click=${() => void backUp(app, "save")}>Back up to a file</button>
+        ${canShareFiles() ? html`<button type="button" @click=${() => void backUp(app, "share")}>Share a backup</button>` : nothing}
         ${filePicker("restore", "Restore a backup", ".json,application/json", (file) => void restoreBackup(app, file))}
         <a class="button" href=${href({ page: "kept" })}>Bin and storage</a>
         <a class="button" href=${href({ page: "help" })}>How to type, and cautions</a>

@@ -2,7 +2,7 @@
 
 import { html, nothing, type TemplateResult } from "lit";
 import type { App } from "../app/app";
-import { backUpAll, count, saveText } from "../app/files";
+import { backUp, count, saveText } from "../app/files";
 import { emptyBin, putBack } from "../app/jobs";
 import { href } from "../app/routes";
 import { clockText } from "../store/texts";
@@ -21,7 +21,7 @@ export function keptPage(app: App): TemplateResult {
             <li>${app.state.core.text}</li>
           </ul>`}
       <div class="actions">
-        <button type="button" class="main" @click=${() => void backUpAll(app, "save")}>Back up to a file</button>
+        <button type="button" class="main" @click=${() => void backUp(app, "save")}>Back up to a file</button>
         <button type="button" @click=${() => void app.store.requestPersistence()}>Ask the browser to keep the jobs</button>
       </div>
     </section>

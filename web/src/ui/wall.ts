@@ -6,7 +6,7 @@ import type { App } from "../app/app";
 import type { Forms, JointAnswer, Row } from "../app/contract";
 import { addRow, changeJob, duplicateRow, moveRow, newId, removeRow } from "../app/editing";
 import { blankRow, groupOf, systemOf } from "../app/fields";
-import { exportFile } from "../app/files";
+import { backUp, exportFile } from "../app/files";
 import { go } from "../app/jobs";
 import { getRows, rowNameOf, split } from "../app/pointer";
 import { href } from "../app/routes";
@@ -44,6 +44,7 @@ export function wallPage(app: App, forms: Forms): TemplateResult {
           <a class="button" data-testid="to-cure" href=${href({ page: "cure", job: app.open.id })}>Cure</a>
           <a class="button" href=${href({ page: "sheet", job: app.open.id, joint: null })}>Sheet to print</a>
           <button type="button" data-testid="export-job" @click=${() => void exportFile(app, "job", "save")}>Save job file</button>
+          ${app.open.isLoose ? nothing : html`<button type="button" data-testid="export-with-photos" @click=${() => void backUp(app, "save", app.open.id)}>Save with photos</button>`}
           <a class="button" href=${href({ page: "history", job: app.open.id })}>Earlier copies</a>
         </div>
       </section>
