@@ -140,6 +140,8 @@ class _Builder:
             first = next((issue.message for issue in self.reads.issues if issue.severity == "error"), "It cannot be worked out.")
             return Run(**head, left_out=first)
         mean, least, most = shapes
+        # Beyond the largest stock rod a wider place has no crown, so the widest need not take the most.
+        least, most = min(least, mean.area_mm2, most), max(least, mean.area_mm2, most)
         count, lines = values["count"] or 1, values["lines"] or 1
         length_m = values["length"] * count * lines / 1000.0
         waste = values["waste"] if values["waste"] is not None else settings.waste_fraction
