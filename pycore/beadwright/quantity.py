@@ -301,11 +301,6 @@ def from_core(kind: str, value: Fraction, unit: str) -> Fraction:
     return (value - offset) / factor
 
 
-def unit_factors(kind: str, unit: str) -> tuple[float, float]:
-    """`(factor, offset)` as floats, for printing; core = factor * number + offset."""
-    return _float_factors(kind, unit)
-
-
 @cache
 def _float_factors(kind: str, unit: str) -> tuple[float, float]:
     factor, offset = _factor_and_offset(kind, unit)
@@ -553,13 +548,6 @@ def show_span(value_mm: float, system: str) -> str:
 def default_unit(kind: str, system: str) -> str:
     """The unit in which a kind is shown in one system."""
     return KINDS[kind].defaults[system]
-
-
-def show_in_system(value: float, kind: str, system: str) -> str:
-    """A core value in the habit of one unit system."""
-    if kind == "length":
-        return show_length(value, system)
-    return show(value, kind, default_unit(kind, system))
 
 
 def exact_text(value: Fraction, kind: str, unit: str) -> str:

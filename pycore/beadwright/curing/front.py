@@ -64,11 +64,6 @@ class Reach:
         return sqrt(2.0 * self.reach_mm2)
 
     @property
-    def mean_depth_mm(self) -> float:
-        """Section over open length: how deep the bead is on average behind its open face."""
-        return self.area_mm2 / self.open_mm if self.open_mm > 0 else self.throat_mm
-
-    @property
     def faces_text(self) -> str:
         """The open faces as the solver takes them."""
         return "+".join(self.open_faces)

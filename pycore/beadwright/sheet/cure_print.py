@@ -6,9 +6,7 @@ from collections.abc import Iterable, Mapping
 from html import escape
 from typing import Any
 
-from .printed import _STYLE as STYLE
-from .printed import BOUNDARY
-from .printed import _head as head_lines
+from .printed import BOUNDARY, STYLE, head_lines
 
 
 def cure_html(job: Mapping[str, Any], answer: Mapping[str, Any]) -> bytes:

@@ -11,7 +11,7 @@ BOUNDARY = (
     "This sheet records and computes; it approves nothing."
 )
 
-_STYLE = """
+STYLE = """
 body{font:11pt/1.4 system-ui,sans-serif;color:#111;background:#fff;margin:12mm auto;max-width:180mm;padding:0 4mm}
 header{border-bottom:2pt solid #111;margin-bottom:6mm}h1{font-size:17pt;margin:0}h2{font-size:14pt;border-bottom:1pt solid #111;margin:9mm 0 2mm}h3{font-size:11pt;margin:5mm 0 1mm}
 dl.head{display:flex;flex-wrap:wrap;gap:1mm 8mm;margin:2mm 0}dl.head div{display:flex;gap:2mm}dt{color:#444}dd{margin:0;font-weight:600}
@@ -23,7 +23,9 @@ section{break-before:page}section:first-of-type{break-before:auto}thead{display:
 """
 
 
-def _head(job: Mapping[str, Any], answer: Mapping[str, Any]) -> list[tuple[str, str]]:
+def head_lines(job: Mapping[str, Any], answer: Mapping[str, Any]) -> list[tuple[str, str]]:
+    """What stands in the title block of a sheet, as label and value; empty ones are left out."""
+
     def text(key: str) -> str:
         value = job.get(key)
         return value if isinstance(value, str) else ""
@@ -39,8 +41,8 @@ def sheet_html(job: Mapping[str, Any], answer: Mapping[str, Any]) -> bytes:
     title = job.get("title") if isinstance(job.get("title"), str) else ""
     parts = [
         "<!doctype html><html lang='en'><head><meta charset='utf-8'><meta name='viewport' content='width=device-width'>",
-        f"<title>{escape(title or 'Joint sheet')}</title><style>{_STYLE}</style></head><body><header><h1>{escape(title or 'Untitled job')}</h1><dl class='head'>",
-        *(f"<div><dt>{escape(label)}</dt><dd>{escape(value)}</dd></div>" for label, value in _head(job, answer)),
+        f"<title>{escape(title or 'Joint sheet')}</title><style>{STYLE}</style></head><body><header><h1>{escape(title or 'Untitled job')}</h1><dl class='head'>",
+        *(f"<div><dt>{escape(label)}</dt><dd>{escape(value)}</dd></div>" for label, value in head_lines(job, answer)),
         f"</dl></header><p>{escape(BOUNDARY)}</p>",
     ]
     for joint in answer["joints"].values():
@@ -118,7 +120,7 @@ def sheet_text(job: Mapping[str, Any], answer: Mapping[str, Any]) -> str:
     """The same sheet for a terminal."""
     title = job.get("title") if isinstance(job.get("title"), str) else ""
     lines = [title or "Untitled job", "=" * max(12, len(title or "Untitled job"))]
-    lines += [f"{label}: {value}" for label, value in _head(job, answer)]
+    lines += [f"{label}: {value}" for label, value in head_lines(job, answer)]
     lines += ["", BOUNDARY, ""]
     lines += [f"{issue['severity'].upper()} {issue['path'] or '/'}: {issue['message']}" for issue in answer["issues"]]
     for joint in answer["joints"].values():
